@@ -1,0 +1,59 @@
+import { firstLines } from '#shared/domain/review/first-lines'
+import { writeLetter } from '../letters'
+import { recipientsOf } from '../recipients'
+import type { Composer } from './material'
+import { pageUrl } from './material'
+import { momentText } from './moment'
+import type { AnswerSubject } from './review-subject.repository'
+import { findAnswerSubject, findWaitingSubject } from './review-subject.repository'
+
+/** Enough to know whether to read it now, little enough to read on a lock screen. */
+const FIRST_LINES_CHARS = 280
+
+export const reviewWaiting: Composer = async ({ ctx, row, studio, reader, timeZone }) => {
+  const review = await findWaitingSubject(ctx.db, row.subject_id)
+  if (!review || !reader) return undefined
+  const isForReader = review.state === 'waiting' || (review.state === 'in_hand' && review.coach_id === reader.id)
+  return isForReader
+    ? writeLetter('review-waiting', {
+        studioName: studio.name,
+        studentName: review.student_name,
+        coachName: review.chosen_coach_name ?? undefined,
+        questionTitle: review.title,
+        promiseText: momentText(review.promised_at_ms, timeZone),
+        reviewUrl: pageUrl(ctx, `/desk/${review.id}`),
+      })
+    : undefined
+}
+
+export const answered: Composer = async ({ ctx, row, studio, reader }) => {
+  const answer = await findAnswerSubject(ctx.db, row.subject_id)
+  if (!answer || !reader) return undefined
+  // Asked again now: a guardianship may have ended while the letter waited.
+  const recipient = (await recipientsOf(ctx.db, answer.student_id)).find(({ userId }) => userId === reader.id)
+  return recipient && writeLetter('answered', {
+    studioName: studio.name,
+    readerName: reader.name,
+    studentName: answer.student_name,
+    coachName: answer.coach_name,
+    title: answer.title,
+    firstLines: firstLines(toLetter(answer), FIRST_LINES_CHARS),
+    oneChange: answer.one_change,
+    reviewUrl: pageUrl(ctx, `/reviews/${answer.review_id}`),
+    isGuardianCopy: recipient.isGuardian,
+  })
+}
+
+function toLetter(row: AnswerSubject) {
+  return {
+    leaveAlone: row.leave_alone,
+    saw: row.saw,
+    why: row.why,
+    howSure: row.how_sure,
+    oneChange: row.one_change,
+    drillTitle: row.drill_title,
+    drillSteps: row.drill_steps,
+    drillDose: row.drill_dose,
+    caution: row.caution,
+  }
+}
