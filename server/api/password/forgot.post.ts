@@ -1,0 +1,13 @@
+import { forgotSchema } from '#shared/schemas/accounts'
+import type { Done } from '#shared/types/answers'
+import { clientAddress } from '#server/features/people/client-address'
+import { askForReset } from '#server/features/people/password.service'
+import { answer } from '#server/utils/answer'
+import { anyone } from '#server/utils/guards'
+import { readJson } from '#server/utils/input'
+
+export default defineEventHandler(event => answer(event, async (): Promise<Done> => {
+  const ctx = await anyone(event)
+  const { email } = await readJson(event, forgotSchema)
+  return askForReset(ctx, { email, address: clientAddress(event.node.req, ctx.settings) })
+}, { status: 202 }))

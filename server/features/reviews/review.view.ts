@@ -1,0 +1,110 @@
+import { ageInYears } from '#shared/domain/people/age'
+import type { ReviewFacts } from '#shared/domain/review/states'
+import { movesFrom } from '#shared/domain/review/states'
+import type { ClipBrief, LetterView, ReviewView, TurnaroundView } from '#shared/types/reviews'
+import type { SignedInCtx } from '#server/context'
+import type { Database } from '#server/database/client'
+import { getStudio } from '#server/features/people/studio.repository'
+import type { TurnaroundRow } from '#server/features/turnaround/turnaround.repository'
+import { findTurnaround } from '#server/features/turnaround/turnaround.repository'
+import type { ClipRow } from './clip.repository'
+import { listClips } from './clip.repository'
+import type { LetterRecord } from './letter.repository'
+import { findLetter } from './letter.repository'
+import { mayReadLimits, rolesFor } from './review.policy'
+import type { ReviewRecord } from './review.repository'
+
+/** A review as one reader sees it. `record` must have been found for that reader. */
+export async function viewReview(db: Database, ctx: SignedInCtx, record: ReviewRecord): Promise<ReviewView> {
+  const [clips, turnaround, letter, studio] = [
+    await listClips(db, record.id),
+    await findTurnaround(db, record.id, 'answer'),
+    record.answered_at_ms === null ? undefined : await findLetter(db, record.id),
+    await getStudio(db),
+  ]
+  const facts = reviewFacts(record)
+  return {
+    id: record.id,
+    number: record.number,
+    state: record.state,
+    version: record.version,
+    student: {
+      id: record.student_id,
+      name: record.student_name,
+      hasPicture: record.student_picture_key !== null,
+      isJunior: ageInYears(record.birth_date, ctx.nowMs, record.student_time_zone) < studio.adult_age,
+    },
+    coach: person(record.coach_id, record.coach_name, record.coach_picture_key),
+    chosenCoach: person(record.chosen_coach_id, record.chosen_name, record.chosen_picture_key),
+    title: record.title,
+    question: record.question,
+    area: record.area,
+    club: record.club,
+    misses: record.misses,
+    tried: record.tried,
+    handedness: record.handedness,
+    limits: mayReadLimits(ctx.viewer) ? record.limits : null,
+    clips: clips.map(viewClip),
+    turnaround: turnaround ? viewTurnaround(turnaround, ctx.nowMs) : null,
+    letter: letter ? viewLetter(letter) : null,
+    createdAtMs: record.created_at_ms,
+    submittedAtMs: record.submitted_at_ms,
+    moves: [...new Set(rolesFor(ctx.viewer).flatMap(role => movesFrom(record.state, role, facts)))],
+  }
+}
+
+export function reviewFacts(record: ReviewRecord): ReviewFacts {
+  return {
+    filmAskedCount: record.film_asked_count,
+    notAnsweredCount: record.not_answered_count,
+    stateBeforeNewFilm: record.state_before_new_film,
+  }
+}
+
+export function viewClip(row: ClipRow): ClipBrief {
+  return {
+    id: row.id,
+    view: row.view,
+    state: row.state,
+    fileName: row.file_name,
+    bytes: row.bytes,
+    refusal: row.refusal,
+    widthPx: row.width_px,
+    heightPx: row.height_px,
+    durationMs: row.duration_ms,
+    framesPerSecond: row.frames_per_second,
+    createdAtMs: row.created_at_ms,
+  }
+}
+
+function viewTurnaround(row: TurnaroundRow, nowMs: number): TurnaroundView {
+  return {
+    kind: row.kind,
+    status: row.status,
+    startedAtMs: row.started_at_ms,
+    promisedAtMs: row.promised_at_ms,
+    stoppedAtMs: row.stopped_at_ms,
+    isLate: row.status !== 'paused' && (row.stopped_at_ms ?? nowMs) > row.promised_at_ms,
+  }
+}
+
+function viewLetter(row: LetterRecord): LetterView {
+  return {
+    title: row.title,
+    leaveAlone: row.leave_alone,
+    saw: row.saw,
+    why: row.why,
+    howSure: row.how_sure,
+    oneChange: row.one_change,
+    drillTitle: row.drill_title,
+    drillSteps: row.drill_steps,
+    drillDose: row.drill_dose,
+    caution: row.caution,
+    answeredAtMs: row.answered_at_ms,
+    coach: { id: row.coach_id, name: row.coach_name, hasPicture: row.coach_picture_key !== null },
+  }
+}
+
+function person(id: string | null, name: string | null, pictureKey: string | null) {
+  return id === null || name === null ? null : { id, name, hasPicture: pictureKey !== null }
+}

@@ -1,0 +1,15 @@
+import type { ViewerFacts } from './context'
+import type { RepeatableRequest } from './write'
+
+declare module 'h3' {
+  interface H3EventContext {
+    requestId?: string
+    startedAtMs?: number
+    /** Who is signed in, found once a request. */
+    viewer?: Promise<ViewerFacts | undefined>
+    bodyText?: Promise<string>
+    repeatable?: RepeatableRequest
+  }
+}
+
+export {}

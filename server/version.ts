@@ -1,0 +1,4 @@
+import manifest from '../package.json'
+
+/** As the package says. */
+export const version = manifest.version
