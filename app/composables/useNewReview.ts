@@ -1,0 +1,95 @@
+import type { ChangeReview } from '#shared/schemas/reviews'
+import type { ReviewView } from '#shared/types/reviews'
+import type { FieldErrors } from '#shared/types/answers'
+
+/** What a student fills in, all of it text but the coach. */
+export interface ReviewFields {
+  title: string
+  question: string
+  area: string
+  club: string
+  misses: string
+  tried: string
+  /** Empty for the first coach who is free. */
+  chosenCoachId: string
+}
+
+const EMPTY_FIELDS: ReviewFields = {
+  title: '', question: '', area: 'full_swing', club: '7-iron', misses: '', tried: '', chosenCoachId: '',
+}
+
+/** A review being asked: it is made on the server at the first change and follows what is typed. */
+export function useNewReview(draft: ReviewView | undefined) {
+  const router = useRouter()
+  const reviewId = ref(draft?.id)
+  const fields = reactive<ReviewFields>(draft === undefined ? { ...EMPTY_FIELDS } : readFields(draft))
+  let saved: ReviewFields = { ...fields }
+  // Sent again as it was when the first answer got lost, so that one question does not become two drafts.
+  let creation: { key: string, body: ReviewFields } | undefined
+  const autosave = useAutosave(save)
+  const submitting = useDeed()
+
+  async function save() {
+    if (reviewId.value === undefined) await create()
+    const sent = { ...fields }
+    const change = changeBetween(saved, sent)
+    if (Object.keys(change).length === 0) return
+    await $fetch(`/api/reviews/${reviewId.value}`, { method: 'PATCH', body: change })
+    saved = sent
+  }
+
+  async function create() {
+    creation ??= { key: crypto.randomUUID(), body: { ...fields } }
+    const { body, key } = creation
+    const review = await $fetch<ReviewView>('/api/reviews', {
+      method: 'POST',
+      headers: { 'Idempotency-Key': key },
+      body: { ...body, chosenCoachId: body.chosenCoachId || null },
+    })
+    reviewId.value = review.id
+    saved = { ...body }
+    // A reload must find the draft again.
+    await router.replace({ query: { ...router.currentRoute.value.query, draft: review.id } })
+  }
+
+  /** The draft's id, made now when there is none; undefined when it could not be made. */
+  async function ensureDraft(): Promise<string | undefined> {
+    if (reviewId.value === undefined) autosave.touch()
+    await autosave.flush()
+    return reviewId.value
+  }
+
+  /** What a coach still needs, by field; empty when all is there. The rules come only now, so that the page starts light. */
+  async function findMissing(): Promise<FieldErrors> {
+    // Without a connection the rules cannot be had; the server knows them too and checks when the review is sent.
+    const rules = await import('#shared/schemas/reviews').catch(() => undefined)
+    const result = rules?.completeReviewSchema.safeParse(fields)
+    return Object.fromEntries(result?.error?.issues.map(issue => [issue.path.join('.'), issue.message]) ?? [])
+  }
+
+  /** The review as sent, or undefined (see `submitting.problem`). */
+  async function submit(offerId: string): Promise<ReviewView | undefined> {
+    if (!await autosave.flush() || reviewId.value === undefined) return undefined
+    return await submitting.run(headers => $fetch<ReviewView>(`/api/reviews/${reviewId.value}/submit`, {
+      method: 'POST', headers, body: { offerId, payBy: 'credit' },
+    }), offerId)
+  }
+
+  return { reviewId, fields, touch: autosave.touch, saveState: autosave.state, saveProblem: autosave.problem, ensureDraft, findMissing, submit, submitting }
+}
+
+function readFields(draft: ReviewView): ReviewFields {
+  const { title, question, area, club, misses, tried } = draft
+  return { title, question, area, club, misses, tried, chosenCoachId: draft.chosenCoach?.id ?? '' }
+}
+
+function changeBetween(before: ReviewFields, after: ReviewFields): Partial<Record<keyof ChangeReview, string | null>> {
+  const change: Partial<Record<keyof ReviewFields, string | null>> = {}
+  for (const name of FIELD_NAMES) {
+    if (before[name] !== after[name]) change[name] = after[name]
+  }
+  if (change.chosenCoachId === '') change.chosenCoachId = null
+  return change
+}
+
+const FIELD_NAMES = ['title', 'question', 'area', 'club', 'misses', 'tried', 'chosenCoachId'] as const satisfies readonly (keyof ReviewFields)[]
