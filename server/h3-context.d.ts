@@ -4,7 +4,6 @@ import type { RepeatableRequest } from './write'
 declare module 'h3' {
   interface H3EventContext {
     requestId?: string
-    startedAtMs?: number
     /** Who is signed in, found once a request. */
     viewer?: Promise<ViewerFacts | undefined>
     bodyText?: Promise<string>

@@ -3,6 +3,7 @@ import type { ClipBrief, ClipView, ReviewView } from '#shared/types/reviews'
 import { readErrorAnswer } from '~/utils/errors'
 
 const READING_POLL_MS = 3_000
+const VIEWS = ['face_on', 'down_the_line'] as const satisfies readonly ClipView[]
 
 /** The clips of a draft: those the server has, and those on their way. */
 export function useClips(reviewId: MaybeRefOrGetter<string | undefined>, known: ClipBrief[]) {
@@ -19,15 +20,23 @@ export function useClips(reviewId: MaybeRefOrGetter<string | undefined>, known: 
   /** The newest clip of a view; what this device has just heard is newer than what the page was loaded with. */
   const clipOf = (view: ClipView): ClipBrief | undefined => {
     const upload = uploadOf(view)
-    if (upload?.phase === 'done' && upload.clip !== undefined) return upload.clip
+    if (upload?.phase === 'done' && upload.clip !== undefined) {
+      const { id } = upload.clip
+      return fromServer.value.find(clip => clip.id === id && clip.state !== 'uploading') ?? upload.clip
+    }
     return fromServer.value.filter(clip => clip.view === view).reduce<ClipBrief | undefined>(
       (newest, clip) => newest === undefined || clip.createdAtMs > newest.createdAtMs ? clip : newest, undefined)
   }
 
-  const accepted = computed(() => (['face_on', 'down_the_line'] as const).filter(view => clipOf(view)?.state === 'accepted'))
-  const isUnderWay = computed(() => (['face_on', 'down_the_line'] as const).some((view) => {
+  const statesOf = () => VIEWS.flatMap(view => clipOf(view)?.state ?? [])
+  const acceptedCount = computed(() => statesOf().filter(state => state === 'accepted').length)
+  const isReading = computed(() => statesOf().includes('reading'))
+  /** True while a clip is neither taken nor refused; the review cannot be sent until then. */
+  const isUnfinished = computed(() => VIEWS.some((view) => {
     const phase = uploadOf(view)?.phase
-    return phase === 'starting' || phase === 'sending' || phase === 'reading'
+    if (phase !== undefined && phase !== 'done') return true
+    const state = clipOf(view)?.state
+    return state === 'uploading' || state === 'reading'
   }))
 
   async function refresh() {
@@ -37,17 +46,19 @@ export function useClips(reviewId: MaybeRefOrGetter<string | undefined>, known: 
     fromServer.value = review.clips
   }
 
-  /** Takes a clip away, from the server too; a refused or half-sent one leaves nothing behind. */
+  /** Takes what there is of a view away, from the server too; a refused or half-sent clip leaves nothing behind. */
   async function remove(view: ClipView) {
     const id = toValue(reviewId)
     if (id === undefined) return
     problem.value = undefined
-    const clip = uploadOf(view)?.clip ?? clipOf(view)
+    const known = fromServer.value.filter(clip => clip.view === view).map(clip => clip.id)
+    const ids = new Set([...known, ...[uploadOf(view)?.clip?.id ?? []].flat()])
     store.stop(id, view)
-    if (clip === undefined) return
     try {
-      await $fetch(`/api/clips/${clip.id}`, { method: 'DELETE' })
-      fromServer.value = fromServer.value.filter(other => other.id !== clip.id)
+      for (const clipId of ids) {
+        await $fetch(`/api/clips/${clipId}`, { method: 'DELETE' })
+        fromServer.value = fromServer.value.filter(other => other.id !== clipId)
+      }
     }
     catch (failure) {
       problem.value = readErrorAnswer(failure).message
@@ -57,12 +68,12 @@ export function useClips(reviewId: MaybeRefOrGetter<string | undefined>, known: 
   let timer: number | undefined
   onMounted(() => {
     timer = window.setInterval(() => {
-      if (fromServer.value.some(clip => clip.state === 'reading')) void refresh().catch(() => undefined)
+      if (isReading.value) void refresh().catch(() => undefined)
     }, READING_POLL_MS)
   })
   onScopeDispose(() => {
     if (import.meta.client) window.clearInterval(timer)
   })
 
-  return { uploadOf, clipOf, accepted, isUnderWay, refresh, remove, problem, store }
+  return { uploadOf, clipOf, acceptedCount, isUnfinished, remove, problem, store }
 }

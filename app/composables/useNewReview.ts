@@ -70,9 +70,12 @@ export function useNewReview(draft: ReviewView | undefined) {
   /** The review as sent, or undefined (see `submitting.problem`). */
   async function submit(offerId: string): Promise<ReviewView | undefined> {
     if (!await autosave.flush() || reviewId.value === undefined) return undefined
-    return await submitting.run(headers => $fetch<ReviewView>(`/api/reviews/${reviewId.value}/submit`, {
+    const sent = await submitting.run(headers => $fetch<ReviewView>(`/api/reviews/${reviewId.value}/submit`, {
       method: 'POST', headers, body: { offerId, payBy: 'credit' },
     }), offerId)
+    // The page of the review must not show it as the draft it was here.
+    if (sent !== undefined) clearNuxtData(`review-${sent.id}`)
+    return sent
   }
 
   return { reviewId, fields, touch: autosave.touch, saveState: autosave.state, saveProblem: autosave.problem, ensureDraft, findMissing, submit, submitting }

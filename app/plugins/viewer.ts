@@ -2,6 +2,6 @@
 export default defineNuxtPlugin({
   name: 'viewer',
   async setup() {
-    await useViewer().isReady
+    await useSessionAnswer()
   },
 })

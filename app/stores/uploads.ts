@@ -3,7 +3,8 @@ import { defineStore } from 'pinia'
 import type { ClipBrief, ClipUpload, ClipView, PartsAnswer } from '#shared/types/reviews'
 import { findFilmContentType } from '~/film/upload/content-type'
 import { putPart } from '~/film/upload/put-part'
-import { explainFailure, NotFilm } from '~/film/upload/explain'
+import { explainFailure, NotFilm, readFailure, type FailureWords } from '~/film/upload/explain'
+import { keepTrying } from '~/film/upload/keep-trying'
 import { sendParts, type SendPlan } from '~/film/upload/send-parts'
 import { waitForNextTry } from '~/film/upload/wait'
 
@@ -20,8 +21,8 @@ export interface ClipOnItsWay {
   phase: UploadPhase
   /** Undefined until the server knows the clip. */
   clip: ClipBrief | undefined
-  /** Words for a person, when failed. */
-  problem: string | undefined
+  /** When failed. */
+  problem: FailureWords | undefined
 }
 
 /** Films being sent. They outlive the page they were chosen on: the person may read on elsewhere meanwhile. */
@@ -42,14 +43,11 @@ export const useUploadsStore = defineStore('uploads', () => {
 
   /** Sends a newly chosen file as the clip of this view. */
   async function send(reviewId: string, view: ClipView, file: File): Promise<void> {
-    await run(reviewId, view, file, undefined, async (slot) => {
+    await run(reviewId, view, file, undefined, async (slot, signal) => {
       const contentType = findFilmContentType(file.name, file.type)
       if (contentType === undefined) throw new NotFilm()
-      const answer = await $fetch<ClipUpload>(`/api/reviews/${reviewId}/clips`, {
-        method: 'POST',
-        headers: { 'Idempotency-Key': crypto.randomUUID() },
-        body: { view, fileName: file.name, bytes: file.size, contentType },
-      })
+      const body = { view, fileName: file.name, bytes: file.size, contentType }
+      const answer = await patiently(headers => $fetch<ClipUpload>(`/api/reviews/${reviewId}/clips`, { method: 'POST', headers, body }), signal)
       put(slot, { clip: answer.clip })
       return { clipId: answer.clip.id, plan: { fileBytes: file.size, partBytes: answer.partBytes, parts: answer.parts, doneNumbers: [] } }
     })
@@ -57,10 +55,10 @@ export const useUploadsStore = defineStore('uploads', () => {
 
   /** Goes on with a clip that was begun before, from what the store has; `file` must be the same one. */
   async function goOn(reviewId: string, clip: ClipBrief, file: File): Promise<void> {
-    await run(reviewId, clip.view, file, clip, async () => {
+    await run(reviewId, clip.view, file, clip, async (_slot, signal) => {
       // Asked for only here: the schemas weigh more than the rest of the page.
       const { PART_BYTES } = await import('#shared/schemas/clips')
-      const answer = await askParts(clip.id, [])
+      const answer = await patiently(headers => askParts(clip.id, [], headers), signal)
       return { clipId: clip.id, plan: { fileBytes: file.size, partBytes: PART_BYTES, parts: answer.parts, doneNumbers: answer.done } }
     })
   }
@@ -79,7 +77,7 @@ export const useUploadsStore = defineStore('uploads', () => {
     view: ClipView,
     file: File,
     clip: ClipBrief | undefined,
-    begin: (slot: string) => Promise<{ clipId: string, plan: SendPlan }>,
+    begin: (slot: string, signal: AbortSignal) => Promise<{ clipId: string, plan: SendPlan }>,
   ): Promise<void> {
     const slot = slotOf(reviewId, view)
     controllers.get(slot)?.abort()
@@ -88,17 +86,16 @@ export const useUploadsStore = defineStore('uploads', () => {
     files.set(slot, file)
     bySlot.value[slot] = { reviewId, view, fileName: file.name, bytes: file.size, sentBytes: 0, phase: 'starting', clip, problem: undefined }
     try {
-      const { clipId, plan } = await begin(slot)
+      const { clipId, plan } = await begin(slot, controller.signal)
       controller.signal.throwIfAborted()
       put(slot, { phase: 'sending' })
       await sendParts(plan, {
         putPart: (url, range, onSentBytes, signal) => putPart(file, url, range, onSentBytes, signal),
-        askParts: numbers => askParts(clipId, numbers),
-        wait: waitForNextTry,
-        random: () => Math.random(),
+        askParts: numbers => patiently(headers => askParts(clipId, numbers, headers), controller.signal),
+        ...patience,
       }, sentBytes => put(slot, { sentBytes }), controller.signal)
       put(slot, { phase: 'reading', sentBytes: file.size })
-      const read = await completeClip(clipId)
+      const read = await patiently(headers => completeClip(clipId, headers), controller.signal)
       controller.signal.throwIfAborted()
       files.delete(slot)
       put(slot, { phase: 'done', clip: read })
@@ -125,18 +122,22 @@ export function isUnderWay(clip: ClipOnItsWay): boolean {
   return clip.phase !== 'done' && clip.phase !== 'failed'
 }
 
-async function askParts(clipId: string, numbers: number[]): Promise<PartsAnswer> {
-  return await $fetch<PartsAnswer>(`/api/clips/${clipId}/parts`, {
-    method: 'POST',
-    headers: { 'Idempotency-Key': crypto.randomUUID() },
-    body: { numbers },
-  })
+interface KeyHeader {
+  'Idempotency-Key': string
 }
 
-async function completeClip(clipId: string): Promise<ClipBrief> {
-  return await $fetch<ClipBrief>(`/api/clips/${clipId}/complete`, {
-    method: 'POST',
-    headers: { 'Idempotency-Key': crypto.randomUUID() },
-    body: {},
-  })
+const patience = { wait: waitForNextTry, random: () => Math.random() }
+
+/** Repeats under one key while no definite answer comes, so that a tunnel does not end an upload. */
+async function patiently<T>(act: (headers: KeyHeader) => Promise<T>, signal: AbortSignal): Promise<T> {
+  const headers = { 'Idempotency-Key': crypto.randomUUID() }
+  return await keepTrying(() => act(headers), readFailure, patience, signal)
+}
+
+async function askParts(clipId: string, numbers: number[], headers: KeyHeader): Promise<PartsAnswer> {
+  return await $fetch<PartsAnswer>(`/api/clips/${clipId}/parts`, { method: 'POST', headers, body: { numbers } })
+}
+
+async function completeClip(clipId: string, headers: KeyHeader): Promise<ClipBrief> {
+  return await $fetch<ClipBrief>(`/api/clips/${clipId}/complete`, { method: 'POST', headers, body: {} })
 }

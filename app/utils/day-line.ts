@@ -22,6 +22,8 @@ export interface AxisLabel {
   /** Share of the width, 0 to 1. */
   position: number
   text: string
+  /** True for an hour within a day, the first to go where there is little room. */
+  isHour: boolean
 }
 
 const HOUR_MS = 3_600_000
@@ -30,6 +32,7 @@ export const NIGHT_SHOWN_MAX_MS = 4 * HOUR_MS
 /** Shorter breaks are gaps in a bar, not bands behind all rows. */
 const NIGHT_MIN_MS = 3 * HOUR_MS
 const EDGE_SHARE = 0.02
+const LABELLED_HOURS = [9, 13, 18]
 
 /**
  * One axis for all rows: from the earliest start to the latest promise, `nowMs` included.
@@ -92,27 +95,34 @@ function drawnMs(firstMs: number, atMs: number, nights: readonly TimeSpan[]): nu
   }, atMs - firstMs)
 }
 
-/** Labels that fit: each working day's first hour with its day, then 9, 13 and 18 o'clock, none nearer than `gapShare`. */
-export function labelAxis(axis: DayAxis, nowMs: number, timeZone: string, gapShare = 0.055): AxisLabel[] {
-  const hours = listWholeHours(axis, timeZone)
-  const isNight = (atMs: number) => axis.nights.some(night => atMs > night.fromMs && atMs < night.toMs)
-  const starts = axis.nights
-    .map(night => night.toMs)
-    .filter(atMs => atMs < axis.toMs)
-    .map(atMs => ({ atMs, text: nameHour(atMs, timeZone, true) }))
-  const first = hours.slice(0, 1).map(hour => ({ atMs: hour.atMs, text: nameHour(hour.atMs, timeZone, true) }))
-  const others = hours
-    .filter(hour => [9, 13, 18].includes(hour.hour) && !isNight(hour.atMs))
-    .map(hour => ({ atMs: hour.atMs, text: nameHour(hour.atMs, timeZone, false) }))
+/** Labels nearer than this share of the width would run into one another; a day's name needs more room than an hour. */
+const DAY_GAP_SHARE = 0.075
+const HOUR_GAP_SHARE = 0.055
 
-  const labels: AxisLabel[] = [{ atMs: nowMs, position: axis.position(nowMs), text: 'Now' }]
-  for (const wanted of [...starts, ...first, ...others]) {
-    const position = axis.position(wanted.atMs)
-    // A day's name needs more room than an hour's number.
+/** Labels that fit: now, each working day's first hour with its day, then 9, 13 and 18 o'clock. */
+export function labelAxis(axis: DayAxis, nowMs: number, timeZone: string): AxisLabel[] {
+  const labels: AxisLabel[] = [{ atMs: nowMs, position: axis.position(nowMs), text: 'Now', isHour: false }]
+  for (const { atMs, isHour } of [...listDayStarts(axis, timeZone), ...listHours(axis, timeZone)]) {
+    const position = axis.position(atMs)
+    const gapShare = isHour ? HOUR_GAP_SHARE : DAY_GAP_SHARE
     const hasRoom = labels.every(label => Math.abs(label.position - position) >= gapShare)
-    if (hasRoom && position <= 1 - EDGE_SHARE) labels.push({ ...wanted, position })
+    if (hasRoom && position <= 1 - EDGE_SHARE) labels.push({ atMs, position, text: nameHour(atMs, timeZone, !isHour), isHour })
   }
   return labels.sort((a, b) => a.position - b.position)
+}
+
+/** The end of each night, and the first whole hour on the axis. */
+function listDayStarts(axis: DayAxis, timeZone: string): { atMs: number, isHour: boolean }[] {
+  const ends = axis.nights.map(night => night.toMs).filter(atMs => atMs < axis.toMs)
+  const first = listWholeHours(axis, timeZone).slice(0, 1).map(hour => hour.atMs)
+  return [...ends, ...first].map(atMs => ({ atMs, isHour: false }))
+}
+
+function listHours(axis: DayAxis, timeZone: string): { atMs: number, isHour: boolean }[] {
+  const isNight = (atMs: number) => axis.nights.some(night => atMs > night.fromMs && atMs < night.toMs)
+  return listWholeHours(axis, timeZone)
+    .filter(({ atMs, hour }) => LABELLED_HOURS.includes(hour) && !isNight(atMs))
+    .map(({ atMs }) => ({ atMs, isHour: true }))
 }
 
 function listWholeHours(axis: DayAxis, timeZone: string): { atMs: number, hour: number }[] {

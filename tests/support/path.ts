@@ -21,6 +21,14 @@ export const LETTER = {
   caution: 'Stop if your back hurts.',
 }
 
+interface ClipOptions {
+  view?: ClipView
+  path?: string
+  /** In place of a file. */
+  bytes?: Buffer
+  contentType?: string
+}
+
 const withId = z.object({ id: z.string() })
 const clipUpload = z.object({ clip: withId, partBytes: z.number(), parts: z.array(z.object({ number: z.number(), url: z.string() })) })
 const draftView = z.object({ version: z.number() })
@@ -39,14 +47,14 @@ export async function startDraft(world: World, as: DemoKey, change: Record<strin
 }
 
 /** Sends a clip as the browser does, whole, and has it read. */
-export async function sendClip(world: World, as: DemoKey, reviewId: string, options: { view?: ClipView, path?: string, contentType?: string } = {}): Promise<Answer> {
+export async function sendClip(world: World, as: DemoKey, reviewId: string, options: ClipOptions = {}): Promise<Answer> {
   const { clipId } = await uploadClip(world, as, reviewId, options)
   return call(world, 'POST', `/api/clips/${clipId}/complete`, { as, body: {} })
 }
 
 /** Sends the parts of a clip and leaves it there. */
-export async function uploadClip(world: World, as: DemoKey, reviewId: string, options: { view?: ClipView, path?: string, contentType?: string } = {}) {
-  const bytes = await readFile(options.path ?? FILM)
+export async function uploadClip(world: World, as: DemoKey, reviewId: string, options: ClipOptions = {}) {
+  const bytes = options.bytes ?? await readFile(options.path ?? FILM)
   const started = await call(world, 'POST', `/api/reviews/${reviewId}/clips`, {
     as, body: { view: options.view ?? 'face_on', fileName: 'swing.mp4', bytes: bytes.length, contentType: options.contentType ?? 'video/mp4' },
   })

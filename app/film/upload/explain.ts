@@ -1,4 +1,5 @@
 import { readErrorAnswer } from '~/utils/errors'
+import type { PartFailure } from './retry'
 import { UploadStopped } from './send-parts'
 
 /** The chosen file does not even say that it is film. */
@@ -10,11 +11,28 @@ const STOPPED_WORDS: Record<UploadStopped['reason'], string> = {
   unreachable: 'The store could not be reached for some minutes. What has arrived is kept. Try again when your connection is better.',
 }
 
-/** Why a clip was not sent, what was kept, and what to do, for whoever sent it. */
-export function explainFailure(error: unknown): string {
-  if (error instanceof UploadStopped) return STOPPED_WORDS[error.reason]
-  if (error instanceof NotFilm) return 'This file is not a video that can be read. Choose an MP4, MOV or WebM file.'
-  const { code, message, fields } = readErrorAnswer(error)
-  if (code === 'no-answer') return 'The connection was lost. What has arrived is kept. Try again when you are back on line.'
-  return Object.values(fields)[0] ?? message
+export interface FailureWords {
+  /** Why a clip was not sent, what was kept, and what to do, for whoever sent it. */
+  words: string
+  /** True when the same bytes may still go through: what has arrived is kept and only the rest must be sent. */
+  canGoOn: boolean
+}
+
+/** Puts whatever stopped a clip into words. */
+export function explainFailure(error: unknown): FailureWords {
+  if (error instanceof UploadStopped) return { words: STOPPED_WORDS[error.reason], canGoOn: error.reason === 'unreachable' }
+  if (error instanceof NotFilm) {
+    return { words: 'This file is not a video that can be read. Choose an MP4, MOV or WebM file.', canGoOn: false }
+  }
+  const { statusCode, message, fields } = readErrorAnswer(error)
+  if (statusCode === 0) {
+    return { words: 'The connection was lost. What has arrived is kept. Try again when you are back on line.', canGoOn: true }
+  }
+  return { words: Object.values(fields)[0] ?? message, canGoOn: statusCode >= 500 || statusCode === 429 }
+}
+
+/** A failed request of our own API in the terms of the retry rules. */
+export function readFailure(error: unknown): PartFailure {
+  const { statusCode } = readErrorAnswer(error)
+  return statusCode === 0 ? { kind: 'network' } : { kind: 'status', status: statusCode }
 }

@@ -7,9 +7,9 @@ export type Channels = Readonly<Record<Channel, number>>
 /** Lengths of an invented grown-up of 1.80 m, in mm. */
 export const BODY = {
   upperArm: 315, forearm: 275, thigh: 432, shank: 428,
-  trunk: 560, halfShoulders: 182, shouldersBelowNeck: 42, halfHips: 92,
+  trunk: 570, halfShoulders: 182, shouldersBelowNeck: 42, halfHips: 92,
   ankleHeight: 82, heelBehindAnkle: 58, toeBeforeAnkle: 196,
-  headAboveNeck: 176, headBeforeNeck: 40,
+  headAboveNeck: 164, headBeforeNeck: 42,
   leadWristOnShaft: 92, trailWristOnShaft: 168,
 } as const
 
@@ -101,9 +101,9 @@ function clubAt(channels: Channels, leadShoulder: Vec3, clubLengthMm: number) {
   return { leadWrist, shaft, gripEnd, clubHead: along(gripEnd, shaft, clubLengthMm), clubToe: turnAbout(normal, shaft, channels.shaftRoll) }
 }
 
-/** The trail hand lies on the far side of the grip from the toe. */
+/** The trail palm lies behind the grip as seen from the target. */
 function palmSide(club: { shaft: Vec3, clubToe: Vec3 }): Vec3 {
-  return scale(cross(club.shaft, club.clubToe), -1)
+  return cross(club.shaft, club.clubToe)
 }
 
 /** The shoulder girdle gives way when an arm is at full stretch. */

@@ -29,8 +29,6 @@ export interface SwingKind {
 export interface ClubMeasures {
   /** Grip end to where the axis of the shaft meets the ground, in mm. */
   lengthMm: number
-  /** Angle between shaft and ground at address, in degrees. */
-  lieDeg: number
   /** Axis of the shaft behind the back of the ball when the face reaches it, in mm along the target line. */
   behindBallMm: number
   /** Axis of the shaft nearer to the golfer than the middle of the ball, in mm. */
@@ -42,10 +40,10 @@ export interface ClubMeasures {
   ballMps: number
 }
 
-/** Usual lengths and lies (37 and 45 inches); the rest is what the heads are drawn with. */
+/** 37 and 44 inches; the rest is what the heads are drawn with. */
 export const CLUBS: Readonly<Record<ClubKind, ClubMeasures>> = {
-  '7-iron': { lengthMm: 940, lieDeg: 62, behindBallMm: 12, insideBallMm: 38, teeMm: 0, launchDeg: 18, ballMps: 46 },
-  'driver': { lengthMm: 1143, lieDeg: 58, behindBallMm: 22, insideBallMm: 52, teeMm: 32, launchDeg: 13, ballMps: 62 },
+  '7-iron': { lengthMm: 940, behindBallMm: 12, insideBallMm: 38, teeMm: 0, launchDeg: 18, ballMps: 46 },
+  'driver': { lengthMm: 1118, behindBallMm: 22, insideBallMm: 52, teeMm: 32, launchDeg: 13, ballMps: 62 },
 }
 
 /** Rules of golf: a ball is at least 42.67 mm across. */

@@ -26,8 +26,8 @@ const IMPACT = 6
 export function stanceFor(kind: SwingKind): Stance {
   const wide = kind.club === 'driver'
   return {
-    leadAnkle: vec(wide ? 95 : 150, 0, wide ? -955 : -768),
-    trailAnkle: vec(wide ? -440 : -272, 0, wide ? -955 : -768),
+    leadAnkle: vec(wide ? 104 : 150, 0, wide ? -1038 : -768),
+    trailAnkle: vec(wide ? -386 : -272, 0, wide ? -1038 : -768),
     leadFlareDeg: 24,
     trailFlareDeg: 8,
   }
@@ -65,7 +65,7 @@ export function makeSwing(kind: SwingKind): Swing {
   return {
     kind,
     startS: times[0],
-    endS: times[9],
+    endS: times[10],
     channelsAt,
     skeletonAt: t => skeletonAt(channelsAt(t), stanceFor(kind), clubMm),
   }

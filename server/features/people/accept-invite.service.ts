@@ -1,7 +1,7 @@
 import type { Ctx } from '#server/context'
 import type { Database } from '#server/database/client'
 import { recordDeed } from '#server/features/audit'
-import { startSession } from '#server/features/sessions/session.service'
+import { startSession } from '#server/features/sessions/start-session'
 import { hashSecret, newId } from '#server/ids'
 import { write } from '#server/write'
 import { insertCoach, listSlugs } from './coach.repository'

@@ -13,7 +13,7 @@ const FIRST_LINK_LASTS_MS = 24 * 60 * 60 * 1000
 export class OwnerExists extends Error {
   override name = 'OwnerExists'
   constructor() {
-    super('This studio has an owner. Owners invite others on the page "People"; a lost password is replaced by "Forgotten?" on the sign-in page.')
+    super('This studio has an owner. Owners invite others on the page "People"; a forgotten password is replaced on the sign-in page.')
   }
 }
 

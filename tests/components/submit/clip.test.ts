@@ -71,8 +71,14 @@ describe('one clip of a review', () => {
   })
 
   it('keeps the words of a failure and offers another try', () => {
-    const wrapper = show({ clip: { ...clip, state: 'uploading' }, upload: { ...upload, phase: 'failed', problem: 'The connection was lost. What has arrived is kept.' } })
+    const wrapper = show({ clip: { ...clip, state: 'uploading' }, upload: { ...upload, phase: 'failed', problem: { words: 'The connection was lost. What has arrived is kept.', canGoOn: true } } })
     expect(wrapper.text()).toContain('The connection was lost. What has arrived is kept.')
     expect(wrapper.findAll('button').map(button => button.text())).toContain('Try again')
+  })
+
+  it('offers no second try for a file that cannot go through', () => {
+    const wrapper = show({ upload: { ...upload, phase: 'failed', problem: { words: 'Not a video.', canGoOn: false } } })
+    expect(wrapper.findAll('button').map(button => button.text())).not.toContain('Try again')
+    expect(wrapper.text()).toContain('Send another')
   })
 })

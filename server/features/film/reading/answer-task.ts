@@ -21,5 +21,5 @@ function answerFailure(error: unknown): ReaderMessage {
     return { kind: 'store-unreachable', message: error.message }
   const reason = error instanceof UnsoundFilm ? error.reason : 'unreadable'
   const detail = error instanceof Error ? error.message : String(error)
-  return { kind: 'read', reading: { kind: 'refused', reason, detail: detail.slice(0, DETAIL_MAX_LENGTH) } }
+  return { kind: 'read', reading: { kind: 'refused', reason, detail: detail.slice(0, DETAIL_MAX_LENGTH).replace(/[^ -~]/g, '?') } }
 }

@@ -107,7 +107,7 @@ async function readFrameTicks(track: InputVideoTrack, timeBase: number, shown: F
 async function findCodec(track: InputVideoTrack): Promise<{ codec: FilmCodec, codecString: string }> {
   const codec = await track.getCodec()
   if (codec === null)
-    return { codec: 'unknown', codecString: String(await track.getInternalCodecId() ?? '').slice(0, 40) }
+    return { codec: 'unknown', codecString: printable(String(await track.getInternalCodecId() ?? '')) }
   return { codec, codecString: await track.getCodecParameterString() ?? '' }
 }
 
@@ -118,8 +118,15 @@ async function findContainer(input: Input): Promise<FilmContainer> {
   return format === WEBM ? 'webm' : 'mp4'
 }
 
-/** A 32-bit float in QuickTime metadata, as Android's MediaMuxer writes it. */
+/** Four letters in a sound file; anything at all in another, and it is stored and logged. */
+function printable(text: string): string {
+  return text.slice(0, 40).replace(/[^ -~]/g, '?')
+}
+
+/** A 32-bit float in QuickTime metadata, as Android's MediaMuxer writes it; WebM has no such tag. */
 async function findCaptureRate(input: Input): Promise<number | undefined> {
+  if (await input.getFormat() === WEBM)
+    return undefined
   const value = (await input.getMetadataTags()).raw?.[CAPTURE_RATE_TAG]
   if (!(value instanceof Uint8Array) || value.byteLength !== 4)
     return undefined

@@ -45,19 +45,30 @@ export class RangeReader {
    * A range outside the file is `UnsoundFilm`: some table pointed there.
    */
   async read(start: number, end: number): Promise<Uint8Array> {
+    this.#requireInside(start, end)
+    await this.load(start, end)
+    return this.peek(start, end)
+  }
+
+  /** As `read`, of what has been loaded before; of anything else `UnsoundFilm`. Thousands of small looks need not wait. */
+  peek(start: number, end: number): Uint8Array {
+    this.#requireInside(start, end)
+    const found = new Uint8Array(end - start)
+    for (let block = Math.floor(start / BLOCK_BYTES); block * BLOCK_BYTES < end; block++) {
+      const at = block * BLOCK_BYTES
+      const stored = this.#blocks.get(block)
+      if (!stored)
+        throw new UnsoundFilm('unreadable', 'not loaded')
+      found.set(stored.subarray(Math.max(0, start - at), end - at), Math.max(0, at - start))
+    }
+    return found
+  }
+
+  #requireInside(start: number, end: number): void {
     if (!Number.isSafeInteger(start) || !Number.isSafeInteger(end) || start < 0 || end < start || end > this.bytes)
       throw new UnsoundFilm('unreadable', 'points outside the file')
     if (end - start > SINGLE_READ_MAX_BYTES)
       throw new UnsoundFilm('unreadable', 'asks for too much at once')
-    await this.load(start, end)
-    const found = new Uint8Array(end - start)
-    for (let block = Math.floor(start / BLOCK_BYTES); block * BLOCK_BYTES < end; block++) {
-      const at = block * BLOCK_BYTES
-      const stored = this.#blocks.get(block)?.subarray(Math.max(0, start - at), end - at)
-      if (stored)
-        found.set(stored, Math.max(0, at - start))
-    }
-    return found
   }
 
   /** Fetches what is not here yet of a range, one request for each run of missing blocks. */

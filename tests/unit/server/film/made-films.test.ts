@@ -1,5 +1,6 @@
 import type { BuiltWorker } from '#tests/support/film/worker'
 import type { RangeServer } from '#tests/support/film/range-server'
+import { BufferSource, BufferTarget, Conversion, Input, MP4, Mp4OutputFormat, Output, QTFF } from 'mediabunny'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { readFilm } from '#server/features/film/reading/read-film'
 import { addToIndex, box, latin, metadata, movie } from '#tests/support/film/boxes'
@@ -86,6 +87,18 @@ describe('a film that is taken', () => {
   })
 })
 
+describe('a film prepared as the page prepares it, by mediabunny and without sound and tags', () => {
+  it.each(['with-sound.mp4', 'place-in-keys.mov', 'b-frames.mp4', 'uneven.mov', 'slow-240.mp4'])('%s is taken, its frames within a tick', async (name) => {
+    const film = await readAccepted(`prepared-${name}`, await prepare(readMadeFilm(name)))
+    const truth = readTruth(name)
+    const seconds = (ticks: number[], timeBase: number) => ticks.map(tick => tick / timeBase)
+    const offsets = seconds(film.frameTicks, film.timeBase).map((second, index) => Math.abs(second - (seconds(truth.ticks, truth.timeBase)[index] ?? NaN)))
+    expect(film.frameCount).toBe(truth.ticks.length)
+    expect(Math.max(...offsets)).toBeLessThan(1 / film.timeBase)
+    expect(film).toMatchObject({ container: 'mp4', hasSound: false, hasLocation: false, deviceTags: [] })
+  })
+})
+
 describe('a film that is refused', () => {
   it.each([
     ['sound-only.mp4', 'not-video'],
@@ -147,10 +160,16 @@ describe('a film that is refused', () => {
   })
 })
 
+async function prepare(film: Uint8Array): Promise<Uint8Array> {
+  const input = new Input({ formats: [MP4, QTFF], source: new BufferSource(film) })
+  const output = new Output({ format: new Mp4OutputFormat(), target: new BufferTarget() })
+  const conversion = await Conversion.init({ input, output, audio: { discard: true }, tags: {}, showWarnings: false })
+  await conversion.execute()
+  return new Uint8Array(output.target.buffer ?? new ArrayBuffer(0))
+}
+
 function longMovie(frames: Buffer): Buffer {
   const film = movie({}, { after: [box('mdat', frames)] })
-  const count = Buffer.alloc(4)
-  count.writeUInt32BE(frames.length)
   const patch = (type: string, at: number, value: number) => film.writeUInt32BE(value, film.indexOf(latin(type)) + 4 + at)
   patch('stts', 8, frames.length)
   patch('stts', 12, 128)

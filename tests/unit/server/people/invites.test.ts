@@ -1,3 +1,4 @@
+import { CompiledQuery } from 'kysely'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import type { SignedInCtx } from '#server/context'
 import { acceptInvite } from '#server/features/people/accept-invite.service'
@@ -150,7 +151,8 @@ describe('lists', () => {
     const query = house.db.selectFrom(table).selectAll()
       .where(({ eb, refTuple, tuple }) => eb(refTuple('created_at_ms', 'id'), '<', tuple(NOW_MS, 'id')))
       .orderBy('created_at_ms', 'desc').orderBy('id', 'desc').limit(26)
-    const plan = await query.explain()
-    expect(plan).toMatchObject([{ detail: expect.stringMatching(new RegExp(`^SEARCH ${table} USING INDEX ${table}_by_creation`)) }])
+    const { sql, parameters } = query.compile()
+    const plan = await house.db.executeQuery<{ detail: string }>(CompiledQuery.raw(`explain query plan ${sql}`, [...parameters]))
+    expect(plan.rows).toMatchObject([{ detail: expect.stringMatching(new RegExp(`^SEARCH ${table} USING INDEX ${table}_by_creation`)) }])
   })
 })

@@ -1,4 +1,5 @@
 import type { FilmFacts } from '#shared/domain/film/reading'
+import type { FilmRefusal } from '#shared/domain/film/refusals'
 import { describe, expect, it } from 'vitest'
 import { isShownByBrowsers, judgeFilm } from '#shared/domain/film/judge'
 import { FILM_MAX_BYTES, FILM_MAX_DURATION_MS, FILM_MIN_FRAMES_PER_SECOND } from '#shared/domain/film/limits'
@@ -22,6 +23,18 @@ const GOOD: FilmFacts = {
   deviceTags: [],
 }
 
+const REFUSED: [FilmRefusal, Partial<FilmFacts>][] = [
+  ['too-large', { bytes: FILM_MAX_BYTES + 1 }],
+  ['no-frames', { frameCount: 1, frameTicks: [0] }],
+  ['no-frames', { frameCount: 0, frameTicks: [] }],
+  ['codec-not-shown', { codec: 'hevc', codecString: 'hvc1.1.6.L93.B0' }],
+  ['too-long', { durationMs: FILM_MAX_DURATION_MS + 1 }],
+  ['too-few-frames-a-second', { framesPerSecond: 23.49 }],
+  ['too-few-frames-a-second', { captureFramesPerSecond: 1 }],
+  ['has-location', { hasLocation: true }],
+  ['has-sound', { hasSound: true }],
+]
+
 describe('judgeFilm', () => {
   it('takes a film that keeps every limit', () => {
     expect(judgeFilm(GOOD)).toBeUndefined()
@@ -31,17 +44,7 @@ describe('judgeFilm', () => {
     expect(judgeFilm({ ...GOOD, bytes: FILM_MAX_BYTES, durationMs: FILM_MAX_DURATION_MS, framesPerSecond: FILM_MIN_FRAMES_PER_SECOND, frameCount: 2 })).toBeUndefined()
   })
 
-  it.each([
-    ['too-large', { bytes: FILM_MAX_BYTES + 1 }],
-    ['no-frames', { frameCount: 1, frameTicks: [0] }],
-    ['no-frames', { frameCount: 0, frameTicks: [] }],
-    ['codec-not-shown', { codec: 'hevc', codecString: 'hvc1.1.6.L93.B0' }],
-    ['too-long', { durationMs: FILM_MAX_DURATION_MS + 1 }],
-    ['too-few-frames-a-second', { framesPerSecond: 23.49 }],
-    ['too-few-frames-a-second', { captureFramesPerSecond: 1 }],
-    ['has-location', { hasLocation: true }],
-    ['has-sound', { hasSound: true }],
-  ] as const)('refuses with %s when %o', (reason, change) => {
+  it.each(REFUSED)('refuses with %s when %o', (reason, change) => {
     expect(judgeFilm({ ...GOOD, ...change })).toBe(reason)
   })
 

@@ -1,0 +1,98 @@
+import { mkdirSync, rmSync } from 'node:fs'
+import { join } from 'node:path'
+import { setTimeout as wait } from 'node:timers/promises'
+import SQLite from 'better-sqlite3'
+import { z } from 'zod'
+import { addressesFrom } from '#fakes/demo/addresses'
+import { startBuiltApp } from '#fakes/demo/app-process'
+import { appEnvironment } from '#fakes/demo/environment'
+import { DEMO_PASSWORD } from '#fakes/demo/people'
+import { startStandIns } from '#fakes/demo/stand-ins'
+import { endChild, nextMessage, startChild } from '../load/child'
+import type { LoadRequest } from '../load/job'
+import { makeStudio } from './studio'
+
+const ADDRESSES = addressesFrom(6600, 6610)
+const YARDSTICK_PORT = 6690
+const DATA_DIR = join('.bench', 'data')
+const DRAIN_LIMIT_MS = 120_000
+
+/** The built server on a seeded database, and the yardstick beside it; only one of them is under load at a time. */
+export interface House {
+  appPort: number
+  yardstickPort: number
+  /** The reviews that wait, in order of promise. */
+  reviewIds: string[]
+  /** As the product's own pages send it, from a coach who signed in. */
+  request(method: 'GET' | 'POST', path: string, body?: unknown): LoadRequest
+  /** Until every letter is out: what one run leaves to do must not slow the next. */
+  untilQuiet(): Promise<void>
+  close(): Promise<void>
+}
+
+export async function openHouse(reviewCount: number): Promise<House> {
+  rmSync(DATA_DIR, { recursive: true, force: true })
+  mkdirSync(DATA_DIR, { recursive: true })
+  const environment = { ...appEnvironment(ADDRESSES, DATA_DIR), LIMITS_FACTOR: '100000', ...profiling() }
+  const standIns = await startStandIns(ADDRESSES, DATA_DIR)
+  const reviewIds = await makeStudio(environment, reviewCount)
+  const app = await startBuiltApp(environment, { isQuiet: true })
+  const yardstick = startChild('tests/bench/api/yardstick.ts', {
+    PORT: String(YARDSTICK_PORT), DATABASE_PATH: join(DATA_DIR, 'yardstick.sqlite'), ROWS: String(reviewCount),
+  })
+  await nextMessage(yardstick, 20_000)
+  const cookie = await signIn(app.url, 'coach@demo.turfnote.test')
+  let sent = 0
+  return {
+    appPort: ADDRESSES.appPort,
+    yardstickPort: YARDSTICK_PORT,
+    reviewIds,
+    request(method, path, body) {
+      sent += 1
+      const same = { 'sec-fetch-site': 'same-origin', cookie, 'accept': 'application/json' }
+      return method === 'GET'
+        ? { method, path, headers: same, body: '' }
+        : { method, path, headers: { ...same, 'origin': app.url, 'content-type': 'application/json', 'idempotency-key': `bench-request-${sent}` }, body: JSON.stringify(body) }
+    },
+    untilQuiet: () => untilNoLetterWaits(join(DATA_DIR, 'turfnote.sqlite')),
+    async close() {
+      await app.stop()
+      await endChild(yardstick)
+      await standIns.close()
+      rmSync(DATA_DIR, { recursive: true, force: true })
+    },
+  }
+}
+
+/** `BENCH_PROFILE=<folder>` writes a profile of the server there, to be opened in a browser's developer tools. */
+function profiling(): Record<string, string> {
+  const folder = process.env.BENCH_PROFILE
+  return folder ? { NODE_OPTIONS: `--cpu-prof --cpu-prof-dir=${folder}` } : {}
+}
+
+async function signIn(url: string, email: string): Promise<string> {
+  const response = await fetch(`${url}/api/session`, {
+    method: 'POST',
+    headers: { 'content-type': 'application/json', 'origin': url },
+    body: JSON.stringify({ email, password: DEMO_PASSWORD }),
+  })
+  if (!response.ok) throw new Error(`Signing in failed: ${await response.text()}`)
+  return response.headers.getSetCookie().map(cookie => cookie.split(';')[0]).join('; ')
+}
+
+const countSchema = z.object({ count: z.number() })
+
+async function untilNoLetterWaits(databasePath: string): Promise<void> {
+  const handle = new SQLite(databasePath, { readonly: true })
+  try {
+    const waiting = handle.prepare('select count(*) as count from outbox where state = \'waiting\'')
+    const deadlineMs = Date.now() + DRAIN_LIMIT_MS
+    while (countSchema.parse(waiting.get()).count > 0) {
+      if (Date.now() > deadlineMs) throw new Error(`Letters still waited after ${DRAIN_LIMIT_MS / 1000} s.`)
+      await wait(100)
+    }
+  }
+  finally {
+    handle.close()
+  }
+}
