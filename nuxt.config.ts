@@ -61,7 +61,7 @@ export default defineNuxtConfig({
     scheduledTasks: { '* * * * *': ['mail:send', 'film:read', 'people:tidy'] },
     errorHandler: errorHandlers,
     typescript: { tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } } },
-    rollupConfig: { output: { generatedCode: 'es2015' } },
+    esbuild: { options: { target: 'node20' } },
   },
 
   typescript: {

@@ -1,9 +1,10 @@
-import { computed, ref } from 'vue'
+import { computed, ref, watch } from 'vue'
 import { defineStore } from 'pinia'
 import type { ClipBrief, ClipUpload, ClipView, PartsAnswer } from '#shared/types/reviews'
 import { findFilmContentType } from '~/film/upload/content-type'
 import { putPart } from '~/film/upload/put-part'
 import { explainFailure, NotFilm, readFailure, type FailureWords } from '~/film/upload/explain'
+import { holdPage } from '~/film/upload/hold-page'
 import { keepTrying } from '~/film/upload/keep-trying'
 import { sendParts, type SendPlan } from '~/film/upload/send-parts'
 import { waitForNextTry } from '~/film/upload/wait'
@@ -33,6 +34,8 @@ export const useUploadsStore = defineStore('uploads', () => {
   const controllers = new Map<string, AbortController>()
 
   const isSending = computed(() => Object.values(bySlot.value).some(isUnderWay))
+  watch(isSending, holdPage)
+
   const slotOf = (reviewId: string, view: ClipView) => `${reviewId}:${view}`
   const find = (reviewId: string, view: ClipView) => bySlot.value[slotOf(reviewId, view)]
 
@@ -122,9 +125,8 @@ export function isUnderWay(clip: ClipOnItsWay): boolean {
   return clip.phase !== 'done' && clip.phase !== 'failed'
 }
 
-interface KeyHeader {
-  'Idempotency-Key': string
-}
+/** A type, not an interface: only types count as the plain records that headers are. */
+type KeyHeader = { 'Idempotency-Key': string }
 
 const patience = { wait: waitForNextTry, random: () => Math.random() }
 

@@ -18,11 +18,16 @@ export function formatMegabytes(bytes: number): string {
   return `${Math.max(bytes / 1_000_000, 0.1).toFixed(1)} MB`
 }
 
-/** `3.1 s · 240 frames a second · 1080 × 1920`, from what the server read; parts it could not read are left out. */
-export function clipFacts(clip: Pick<ClipBrief, 'durationMs' | 'framesPerSecond' | 'widthPx' | 'heightPx'>): string {
+/** `3.1 s · 240 frames a second`, from what the server read; parts it could not read are left out. */
+export function clipTiming(clip: Pick<ClipBrief, 'durationMs' | 'framesPerSecond'>): string {
   return [
     clip.durationMs === null ? '' : `${(clip.durationMs / 1000).toFixed(1)} s`,
     clip.framesPerSecond === null ? '' : `${Math.round(clip.framesPerSecond)} frames a second`,
-    clip.widthPx === null || clip.heightPx === null ? '' : `${clip.widthPx} × ${clip.heightPx}`,
   ].filter(Boolean).join(' · ')
+}
+
+/** `3.1 s · 240 frames a second · 1080 × 1920`. */
+export function clipFacts(clip: Pick<ClipBrief, 'durationMs' | 'framesPerSecond' | 'widthPx' | 'heightPx'>): string {
+  const size = clip.widthPx === null || clip.heightPx === null ? '' : `${clip.widthPx} × ${clip.heightPx}`
+  return [clipTiming(clip), size].filter(Boolean).join(' · ')
 }

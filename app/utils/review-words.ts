@@ -30,7 +30,7 @@ export function reviewHeading(review: ReviewView, reader: Role, nowMs: number, t
     return stateWords(state, reader)
   }
   const promised = formatMoment(turnaround.promisedAtMs, timeZone)
-  if (turnaround.isLate || turnaround.promisedAtMs < nowMs) return `This answer is late; it was promised by ${promised}`
+  if (turnaround.isLate || turnaround.promisedAtMs < nowMs) return `${reader === 'student' ? 'Your' : 'The'} answer is late; it was promised by ${promised}`
   return reader === 'student' ? `Your answer comes by ${promised}` : `The answer is promised by ${promised}`
 }
 

@@ -48,6 +48,8 @@ export interface TurnaroundView {
   startedAtMs: number
   promisedAtMs: number
   stoppedAtMs: number | null
+  /** Working time left to the promise; negative when late, standing still while paused, null once stopped. */
+  timeInHandMs: number | null
   isLate: boolean
 }
 

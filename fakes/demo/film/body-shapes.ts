@@ -1,7 +1,7 @@
 import type { Frame, Side, Skeleton } from './skeleton'
 import type { Mark } from './marks'
 import type { Vec3 } from './vector'
-import { add, along, cross, mix, scale, squareTo, unit, vec } from './vector'
+import { add, along, mix, scale, squareTo, unit, vec } from './vector'
 
 export type Material = 'shirt' | 'sleeve' | 'skin' | 'glove' | 'trousers' | 'belt' | 'shoe' | 'cap' | 'hair' | 'grip' | 'shaft' | 'head'
 
@@ -72,7 +72,7 @@ export function trunkAt(body: Skeleton, share: number): { centre: Vec3, frame: F
   const across = squareTo(mix(body.pelvisFrame.across, body.chestFrame.across, share), frameUp)
   // The small of the back lies behind the straight line from hips to neck.
   const hollow = -26 * Math.sin(Math.PI * share)
-  const front = cross(across, frameUp)
+  const front = squareTo(squareTo(mix(body.pelvisFrame.front, body.chestFrame.front, share), frameUp), across)
   return { centre: along(mix(body.pelvis, body.neckBase, share), front, hollow), frame: { across, up: frameUp, front } }
 }
 

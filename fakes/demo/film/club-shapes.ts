@@ -3,7 +3,7 @@ import type { Skeleton } from './skeleton'
 import type { ClubKind } from './swing-kinds'
 import { CLUBS } from './swing-kinds'
 import type { Vec3 } from './vector'
-import { add, along, cross, scale } from './vector'
+import { add, along, scale } from './vector'
 
 const GRIP_MM = 265
 const SHAFT_PIECES = 7
@@ -26,13 +26,12 @@ export function clubParts(body: Skeleton, club: ClubKind): Part[] {
   return [grip, ...shaft, headPart(body, club)]
 }
 
-/** Directions of a club head: from heel to toe along its sole, up its face, and where the face looks. */
+/** A club head in its own directions: from heel to toe along its sole, up its face, and where the face looks. */
 function headPart(body: Skeleton, club: ClubKind): Part {
-  const face = cross(body.clubToe, body.shaft)
   const up = scale(body.shaft, -1)
   const slope = SOLE_SLOPE[club]
   const place = (toeMm: number, upMm: number, faceMm: number): Vec3 =>
-    add(along(body.clubHead, body.clubToe, toeMm), add(scale(up, upMm - slope * toeMm), scale(face, faceMm)))
+    add(along(body.clubHead, body.clubToe, toeMm), add(scale(up, upMm - slope * toeMm), scale(body.clubFace, faceMm)))
   const points = club === 'driver' ? driverPoints(place) : ironPoints(place)
   return { owner: 'club', material: 'head', centre: place(30, 10, 0), nearerMm: 0, shapes: [{ kind: 'hull', points }] }
 }

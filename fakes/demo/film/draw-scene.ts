@@ -2,7 +2,8 @@ import type { Camera, Pixel } from './camera'
 import { HEIGHT_PX, project, WIDTH_PX } from './camera'
 import type { Brush } from './paint'
 import { tracePolygon } from './paint'
-import { FLAG, STICKS } from './scene'
+import { groundFor } from './scene'
+import type { Hands } from './swing-kinds'
 import type { Vec3 } from './vector'
 import { vec } from './vector'
 
@@ -11,7 +12,8 @@ const SKY = ['#B9CDD6', '#D3DDDC', '#EAE6D6'] as const
 const GRASS = ['#93A87C', '#7F9868', '#6B8553'] as const
 
 /** The range behind the golfer: sky, hills, trees, a mown fairway, a flag. Drawn once a clip, since the camera stands still. */
-export function drawScene(brush: Brush, camera: Camera): void {
+export function drawScene(brush: Brush, camera: Camera, hands: Hands): void {
+  const { flag, sticks } = groundFor(camera.view, hands)
   const sky = brush.createLinearGradient(0, 0, 0, HORIZON_PX)
   SKY.forEach((colour, index) => sky.addColorStop(index / 2, colour))
   brush.fillStyle = sky
@@ -22,8 +24,8 @@ export function drawScene(brush: Brush, camera: Camera): void {
   brush.fillStyle = grass
   brush.fillRect(0, HORIZON_PX, WIDTH_PX, HEIGHT_PX - HORIZON_PX)
   drawMowing(brush, camera)
-  drawFlag(brush, camera)
-  for (const stick of STICKS[camera.view]) drawStick(brush, camera, stick.from, stick.to)
+  drawFlag(brush, camera, flag)
+  for (const stick of sticks) drawStick(brush, camera, stick.from, stick.to)
 }
 
 function drawHills(brush: Brush): void {
@@ -82,8 +84,7 @@ function alongView(camera: Camera, stripe: number): Pixel[] {
   return [at(from, 1200), at(to, 1200), at(to, 260_000), at(from, 260_000)]
 }
 
-function drawFlag(brush: Brush, camera: Camera): void {
-  const flag = FLAG[camera.view]
+function drawFlag(brush: Brush, camera: Camera, flag: { foot: Vec3, top: Vec3 }): void {
   const [foot, top] = [project(camera, flag.foot), project(camera, flag.top)]
   brush.lineCap = 'butt'
   brush.lineWidth = 2.2

@@ -50,6 +50,8 @@ export interface Skeleton {
   shaft: Vec3
   /** From heel to toe of the club head, square to the shaft. */
   clubToe: Vec3
+  /** Where the face looks, square to both. */
+  clubFace: Vec3
 }
 
 export interface Stance {
@@ -70,12 +72,14 @@ export function skeletonAt(channels: Channels, stance: Stance, clubLengthMm: num
   const leadShoulder = add(shoulders, add(scale(chestFrame.across, BODY.halfShoulders), scale(chestFrame.front, channels.leadForward)))
   const restTrail = add(shoulders, add(scale(chestFrame.across, -BODY.halfShoulders), scale(chestFrame.front, channels.trailForward)))
   const club = clubAt(channels, leadShoulder, clubLengthMm)
-  const trailWrist = add(along(club.gripEnd, club.shaft, BODY.trailWristOnShaft), scale(palmSide(club), 14))
+  // The trail palm lies behind the grip as seen from the target.
+  const trailWrist = add(along(club.gripEnd, club.shaft, BODY.trailWristOnShaft), scale(club.clubFace, -14))
   const trailShoulder = within(restTrail, trailWrist, BODY.upperArm + BODY.forearm - 4)
   const legs = legsOf(channels, pelvis, pelvisFrame, stance)
+  const { leadWrist, ...clubInHand } = club
   return {
-    pelvis, pelvisFrame, neckBase, chestFrame, ...headAt(channels, neckBase, spine), ...club,
-    lead: { ...legs.lead, shoulder: leadShoulder, wrist: club.leadWrist, elbow: elbowOf(leadShoulder, club.leadWrist, leadPole(chestFrame)) },
+    pelvis, pelvisFrame, neckBase, chestFrame, ...headAt(channels, neckBase, spine), ...clubInHand,
+    lead: { ...legs.lead, shoulder: leadShoulder, wrist: leadWrist, elbow: elbowOf(leadShoulder, leadWrist, leadPole(chestFrame)) },
     trail: { ...legs.trail, shoulder: trailShoulder, wrist: trailWrist, elbow: elbowOf(trailShoulder, trailWrist, trailPole(chestFrame)) },
   }
 }
@@ -98,12 +102,8 @@ function clubAt(channels: Channels, leadShoulder: Vec3, clubLengthMm: number) {
   const shaft = inPlane(channels.shaftAngle, channels.shaftPlane)
   const gripEnd = along(leadWrist, shaft, -BODY.leadWristOnShaft)
   const normal = vec(0, Math.cos(radians(channels.shaftPlane)), Math.sin(radians(channels.shaftPlane)))
-  return { leadWrist, shaft, gripEnd, clubHead: along(gripEnd, shaft, clubLengthMm), clubToe: turnAbout(normal, shaft, channels.shaftRoll) }
-}
-
-/** The trail palm lies behind the grip as seen from the target. */
-function palmSide(club: { shaft: Vec3, clubToe: Vec3 }): Vec3 {
-  return cross(club.shaft, club.clubToe)
+  const clubToe = turnAbout(normal, shaft, channels.shaftRoll)
+  return { leadWrist, shaft, gripEnd, clubHead: along(gripEnd, shaft, clubLengthMm), clubToe, clubFace: cross(clubToe, shaft) }
 }
 
 /** The shoulder girdle gives way when an arm is at full stretch. */

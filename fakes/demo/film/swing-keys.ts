@@ -1,3 +1,4 @@
+import { recordOf } from './record-of'
 import type { Knot } from './spline'
 import type { ClubKind, Release } from './swing-kinds'
 
@@ -34,7 +35,7 @@ const SOUND: Table = {
   chestTurn: [0, -42, -70, -92, -48, -8, 22, 50, 76, 98, 112],
   leadForward: [45, 55, 65, 75, 68, 62, 52, 30, 12, 4, 0],
   trailForward: [45, 30, 10, -10, 0, 30, 50, 60, 70, 70, 60],
-  armAngle: [-3, -45, -90, -158, -90, -29, -3, 30, 68, 114, 152],
+  armAngle: [-3, -45, -90, -158, -90, -26, -3, 30, 68, 114, 152],
   armPlane: [76, 71, 61, 50, 56, 70, 76, 74, 67, 63, 62],
   reach: [588, 588, 588, 587, 588, 588, 588, 587, 566, 450, 340],
   shaftAngle: [-6, -90, -187, -264, -190, -90, -7, 90, 172, 242, 296],
@@ -65,14 +66,14 @@ interface Rates {
 }
 
 const RATES: Readonly<Record<Release, Rates>> = {
-  sound: { arm: [800, 640, 480, 600], shaft: [960, 1450, 1870, 1450] },
+  sound: { arm: [800, 590, 440, 600], shaft: [960, 1450, 1960, 1450] },
   early: { arm: [760, 600, 400, 600], shaft: [1000, 1330, 1600, 1270] },
 }
 
 /** A driver is swung round a flatter plane from a wider stance, and meets the ball on the way up. */
 const DRIVER: Partial<Record<Channel, Row>> = {
-  pelvisX: [-136, -134, -132, -124, -76, -36, -14, 6, 24, 46, 66],
-  pelvisY: [878, 877, 875, 872, 863, 870, 882, 892, 895, 894, 894],
+  pelvisX: [-136, -134, -132, -124, -76, -36, -14, 6, 22, 36, 46],
+  pelvisY: [878, 877, 875, 872, 863, 870, 882, 892, 893, 888, 882],
   pelvisZ: [-1168, -1170, -1171, -1173, -1175, -1172, -1164, -1154, -1136, -1102, -1068],
   side: [9, 8, 7, 5, 12, 18, 21, 23, 21, 15, 6],
   bend: [27, 27, 27, 27, 29, 30, 29, 25, 19, 10, 3],
@@ -91,16 +92,7 @@ export function swingKnots(release: Release, club: ClubKind): Record<Channel, Kn
     t: times[index] ?? 0, value, rate: rates?.[index - DOWN_FROM],
   }))
   const { arm, shaft } = RATES[release]
-  return {
-    pelvisX: knots('pelvisX'), pelvisY: knots('pelvisY'), pelvisZ: knots('pelvisZ'),
-    pelvisTurn: knots('pelvisTurn'), pelvisTilt: knots('pelvisTilt'),
-    bend: knots('bend'), side: knots('side'), chestTurn: knots('chestTurn'),
-    leadForward: knots('leadForward'), trailForward: knots('trailForward'),
-    armAngle: knots('armAngle', arm), armPlane: knots('armPlane'), reach: knots('reach'),
-    shaftAngle: knots('shaftAngle', shaft), shaftPlane: knots('shaftPlane'), shaftRoll: knots('shaftRoll'),
-    headTurn: knots('headTurn'), headDown: knots('headDown'),
-    heelLift: knots('heelLift'), trailFootTurn: knots('trailFootTurn'),
-  }
+  return { ...recordOf(CHANNELS, channel => knots(channel)), armAngle: knots('armAngle', arm), shaftAngle: knots('shaftAngle', shaft) }
 }
 
 /** When each position's pose is meant, in seconds from impact. Positions themselves are found on the moving model. */

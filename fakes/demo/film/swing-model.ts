@@ -1,7 +1,7 @@
 import type { Channels, Skeleton, Stance } from './skeleton'
 import { skeletonAt } from './skeleton'
+import { recordOf } from './record-of'
 import { smoothCurve } from './spline'
-import type { Channel } from './swing-keys'
 import { CHANNELS, positionTimes, swingKnots } from './swing-keys'
 import type { SwingKind } from './swing-kinds'
 import { BALL_RADIUS_MM, CLUBS, SOLE_AT_BALL_MM } from './swing-kinds'
@@ -59,8 +59,8 @@ export function makeSwing(kind: SwingKind): Swing {
       if (knot) knot.value += moved[channel]
     }
   }
-  const curves = mapChannels(channel => smoothCurve(knots[channel]))
-  const channelsAt = (t: number): Channels => mapChannels(channel => curves[channel](t))
+  const curves = recordOf(CHANNELS, channel => smoothCurve(knots[channel]))
+  const channelsAt = (t: number): Channels => recordOf(CHANNELS, channel => curves[channel](t))
   const clubMm = CLUBS[kind.club].lengthMm
   return {
     kind,
@@ -78,17 +78,8 @@ export function leftOver(kind: SwingKind): Array<{ index: number, shift: Vec3 }>
     { index: ADDRESS, at: addressPoint(kind) },
     { index: IMPACT, at: strikePoint(kind) },
   ].map(({ index, at }) => {
-    const channels = mapChannels(channel => knots[channel][index]?.value ?? 0)
+    const channels = recordOf(CHANNELS, channel => knots[channel][index]?.value ?? 0)
     const { clubHead } = skeletonAt(channels, stanceFor(kind), CLUBS[kind.club].lengthMm)
     return { index, shift: subtract(at, clubHead) }
   })
-}
-
-/** The same calculation for every channel. */
-export function mapChannels<T>(of: (channel: Channel) => T): Record<Channel, T> {
-  const [c0, c1, c2, c3, c4, c5, c6, c7, c8, c9, c10, c11, c12, c13, c14, c15, c16, c17, c18, c19] = CHANNELS
-  return {
-    [c0]: of(c0), [c1]: of(c1), [c2]: of(c2), [c3]: of(c3), [c4]: of(c4), [c5]: of(c5), [c6]: of(c6), [c7]: of(c7), [c8]: of(c8), [c9]: of(c9),
-    [c10]: of(c10), [c11]: of(c11), [c12]: of(c12), [c13]: of(c13), [c14]: of(c14), [c15]: of(c15), [c16]: of(c16), [c17]: of(c17), [c18]: of(c18), [c19]: of(c19),
-  }
 }

@@ -3,7 +3,7 @@ import { findStudio } from '#server/features/people/studio.repository'
 import { findUser } from '#server/features/people/user.repository'
 import { addressAlreadyKnown, confirmAddress, forgottenPassword, invitation, passwordChanged } from './compose/account-letters'
 import type { Composer } from './compose/material'
-import { answered, reviewWaiting } from './compose/review-letters'
+import { answered, reviewSent, reviewWaiting } from './compose/review-letters'
 import type { Letter, LetterName } from './letters'
 import { isLetterName } from './letters'
 import type { OutboxRow } from './outbox.repository'
@@ -19,6 +19,7 @@ const COMPOSERS: Record<LetterName, Composer> = {
   'forgotten-password': forgottenPassword,
   'password-changed': passwordChanged,
   'invitation': invitation,
+  'review-sent': reviewSent,
   'review-waiting': reviewWaiting,
   'answered': answered,
 }

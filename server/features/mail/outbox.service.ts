@@ -50,11 +50,17 @@ export async function queueLetter(db: Database, ctx: Ctx, letter: QueuedLetter):
   ctx.pokesAfterWrite.add('mail:send')
 }
 
+/** A letter that cannot be written, through a fault of ours, must not keep the others back. */
+async function setAside(ctx: Ctx, row: OutboxRow, error: unknown): Promise<void> {
+  ctx.log.error({ outboxId: row.id, letter: row.letter, err: error }, 'letter not written')
+  await markForLater(ctx.db, row.id, row.attempts, ctx.nowMs + 15 * MINUTE_MS, 'It could not be written.')
+}
+
 /** Sends what is due, oldest first. A letter whose sending is cut short is sent again later with the same Message-ID. */
 export async function sendDueLetters(ctx: Ctx): Promise<void> {
   for (;;) {
     const due = await claimDueLetters(ctx.db, ctx.nowMs, BATCH, LEASE_MS)
-    await Promise.all(due.map(row => sendOne(ctx, row)))
+    await Promise.all(due.map(row => sendOne(ctx, row).catch(error => setAside(ctx, row, error))))
     if (due.length < BATCH) return
   }
 }

@@ -7,6 +7,7 @@ import type { Database } from '#server/database/client'
 import { getStudio } from '#server/features/people/studio.repository'
 import type { TurnaroundRow } from '#server/features/turnaround/turnaround.repository'
 import { findTurnaround } from '#server/features/turnaround/turnaround.repository'
+import { readTimeInHandMs } from '#server/features/turnaround/turnaround.service'
 import type { ClipRow } from './clip.repository'
 import { listClips } from './clip.repository'
 import type { LetterRecord } from './letter.repository'
@@ -45,7 +46,7 @@ export async function viewReview(db: Database, ctx: SignedInCtx, record: ReviewR
     handedness: record.handedness,
     limits: mayReadLimits(ctx.viewer) ? record.limits : null,
     clips: clips.map(viewClip),
-    turnaround: turnaround ? viewTurnaround(turnaround, ctx.nowMs) : null,
+    turnaround: turnaround ? await viewTurnaround(db, turnaround, ctx.nowMs) : null,
     letter: letter ? viewLetter(letter) : null,
     createdAtMs: record.created_at_ms,
     submittedAtMs: record.submitted_at_ms,
@@ -77,13 +78,14 @@ export function viewClip(row: ClipRow): ClipBrief {
   }
 }
 
-function viewTurnaround(row: TurnaroundRow, nowMs: number): TurnaroundView {
+async function viewTurnaround(db: Database, row: TurnaroundRow, nowMs: number): Promise<TurnaroundView> {
   return {
     kind: row.kind,
     status: row.status,
     startedAtMs: row.started_at_ms,
     promisedAtMs: row.promised_at_ms,
     stoppedAtMs: row.stopped_at_ms,
+    timeInHandMs: await readTimeInHandMs(db, row, nowMs),
     isLate: row.status !== 'paused' && (row.stopped_at_ms ?? nowMs) > row.promised_at_ms,
   }
 }

@@ -8,6 +8,7 @@ import { recordDeed } from '#server/features/audit'
 import { checkFilmConsent } from '#server/features/film/consent'
 import { queueLetter } from '#server/features/mail/outbox.service'
 import { recipientsOf } from '#server/features/mail/recipients'
+import { listCoaches } from '#server/features/people/coach.repository'
 import { findOldestCredit, spendCredit } from '#server/features/offers/credit.repository'
 import { beginAnswerClock } from '#server/features/turnaround/turnaround.service'
 import { invalidFields, notFound } from '#server/refusal'
@@ -38,12 +39,23 @@ export async function submitReview(ctx: SignedInCtx, input: z.output<typeof subm
     await spendCredit(db, credit.id, record.id, ctx.nowMs)
     await updateReview(db, record.id, 'draft', { state: 'waiting', submitted_at_ms: ctx.nowMs, offer_version_id: credit.offer_version_id })
     await beginAnswerClock(db, ctx, { reviewId: record.id, chosenCoachId: record.chosen_coach_id, turnaroundMs: credit.turnaround_ms })
-    for (const { userId } of await recipientsOf(db, record.student_id)) {
-      await queueLetter(db, ctx, { letter: 'review-waiting', event: record.id, subjectId: record.id, to: { userId } })
-    }
+    await tellEverybody(db, ctx, record)
     await recordDeed(db, ctx, 'review-submitted', record.id)
     return viewReview(db, ctx, await getReviewRecord(db, ctx, record.id))
   })
+}
+
+/** The student's side hears of the promise; the chosen coach, or every coach who takes reviews, hears of the review. */
+async function tellEverybody(db: Database, ctx: SignedInCtx, record: ReviewRecord): Promise<void> {
+  for (const { userId } of await recipientsOf(db, record.student_id)) {
+    await queueLetter(db, ctx, { letter: 'review-sent', event: record.id, subjectId: record.id, to: { userId } })
+  }
+  const coachIds = record.chosen_coach_id === null
+    ? (await listCoaches(db)).filter(coach => coach.is_open === 1).map(coach => coach.id)
+    : [record.chosen_coach_id]
+  for (const userId of coachIds) {
+    await queueLetter(db, ctx, { letter: 'review-waiting', event: record.id, subjectId: record.id, to: { userId } })
+  }
 }
 
 function checkWords({ title, question, club }: ReviewRecord): void {

@@ -1,3 +1,4 @@
+import { timeInHandMs } from '#shared/domain/turnaround/between'
 import type { TurnaroundEvent } from '#shared/domain/turnaround/events'
 import { startTurnaround, stopTurnaround } from '#shared/domain/turnaround/moves'
 import { replayTurnaround } from '#shared/domain/turnaround/replay'
@@ -5,7 +6,7 @@ import type { Ctx } from '#server/context'
 import type { Database } from '#server/database/client'
 import { newId } from '#server/ids'
 import { getCalendarFor, getCalendarsById } from './calendars'
-import type { TurnaroundEventRow } from './turnaround.repository'
+import type { TurnaroundEventRow, TurnaroundRow } from './turnaround.repository'
 import { findTurnaround, insertTurnaround, insertTurnaroundEvent, listTurnaroundEvents, updateTurnaround } from './turnaround.repository'
 import { noPromisePossible } from './turnaround.errors'
 
@@ -52,6 +53,16 @@ export async function stopAnswerClock(db: Database, ctx: Ctx, reviewId: string):
     stopped_at_ms: ctx.nowMs,
   })
   await addEvent(db, ctx, turnaround.id, outcome.event)
+}
+
+/** Working time left to a promise; what it was when the clock was stopped for new film, and null after the answer. */
+export async function readTimeInHandMs(db: Database, row: TurnaroundRow, nowMs: number): Promise<number | null> {
+  if (row.status === 'stopped') return null
+  const calendar = (await getCalendarsById(db, [row.calendar_id])).get(row.calendar_id)
+  if (!calendar) throw new Error(`Turnaround ${row.id} names a calendar that is not there.`)
+  if (row.status === 'running') return timeInHandMs(calendar, nowMs, row.promised_at_ms)
+  const lastPause = (await listTurnaroundEvents(db, [row.id])).findLast(event => event.kind === 'paused')
+  return timeInHandMs(calendar, lastPause?.at_ms ?? nowMs, row.promised_at_ms)
 }
 
 export function toEvent(row: TurnaroundEventRow): TurnaroundEvent {

@@ -12,8 +12,8 @@ export interface RangeServer {
   /** Most requests that were open at once. */
   maxOpen: () => number
   fault: StoreFault | undefined
-  /** How long each answer is held back. */
-  delayMs: number
+  /** Answers wait for this. */
+  hold: Promise<void> | undefined
   close: () => Promise<void>
 }
 
@@ -25,7 +25,7 @@ export async function startRangeServer(): Promise<RangeServer> {
   const http = createServer((request, response) => {
     openMax = Math.max(openMax, ++openCount)
     response.once('close', () => openCount--)
-    setTimeout(answer, server.delayMs, request, response)
+    void Promise.resolve(server.hold).then(() => answer(request, response))
   })
 
   function answer(request: IncomingMessage, response: ServerResponse): void {
@@ -69,7 +69,7 @@ export async function startRangeServer(): Promise<RangeServer> {
     sentBytes: name => sent.get(name) ?? 0,
     maxOpen: () => openMax,
     fault: undefined,
-    delayMs: 0,
+    hold: undefined,
     close: async () => {
       http.closeAllConnections()
       http.close()

@@ -26,6 +26,23 @@ export const reviewWaiting: Composer = async ({ ctx, row, studio, reader, timeZo
     : undefined
 }
 
+/** Worth sending while the answer is still to come; after that the letter with the answer says more. */
+export const reviewSent: Composer = async ({ ctx, row, studio, reader, timeZone }) => {
+  const review = await findWaitingSubject(ctx.db, row.subject_id)
+  if (!review || !reader || review.state === 'withdrawn') return undefined
+  const recipient = (await recipientsOf(ctx.db, review.student_id)).find(({ userId }) => userId === reader.id)
+  return recipient && writeLetter('review-sent', {
+    studioName: studio.name,
+    readerName: reader.name,
+    studentName: review.student_name,
+    coachName: review.chosen_coach_name ?? undefined,
+    questionTitle: review.title,
+    promiseText: momentText(review.promised_at_ms, timeZone),
+    reviewUrl: pageUrl(ctx, `/reviews/${review.id}`),
+    isGuardianCopy: recipient.isGuardian,
+  })
+}
+
 export const answered: Composer = async ({ ctx, row, studio, reader }) => {
   const answer = await findAnswerSubject(ctx.db, row.subject_id)
   if (!answer || !reader) return undefined

@@ -1,6 +1,6 @@
 import type { Database } from '#server/database/client'
 
-/** A submitted review as the letter to a coach tells of it, with the promise that holds for its answer. */
+/** A submitted review as the letters to student and coach tell of it, with the promise that holds for its answer. */
 export async function findWaitingSubject(db: Database, reviewId: string) {
   return db.selectFrom('reviews')
     .innerJoin('users as student', 'student.id', 'reviews.student_id')
@@ -8,7 +8,7 @@ export async function findWaitingSubject(db: Database, reviewId: string) {
     .innerJoin('turnarounds', join => join
       .onRef('turnarounds.review_id', '=', 'reviews.id').on('turnarounds.kind', '=', 'answer').on('turnarounds.status', '<>', 'stopped'))
     .select([
-      'reviews.id', 'reviews.state', 'reviews.coach_id', 'reviews.title', 'student.name as student_name',
+      'reviews.id', 'reviews.state', 'reviews.coach_id', 'reviews.student_id', 'reviews.title', 'student.name as student_name',
       'chosen.name as chosen_coach_name', 'turnarounds.promised_at_ms',
     ])
     .where('reviews.id', '=', reviewId)

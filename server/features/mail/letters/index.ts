@@ -11,6 +11,8 @@ import type { InvitationData } from './invitation'
 import { invitationLetter } from './invitation'
 import type { PasswordChangedData } from './password-changed'
 import { passwordChangedLetter } from './password-changed'
+import type { ReviewSentData } from './review-sent'
+import { reviewSentLetter } from './review-sent'
 import type { ReviewWaitingData } from './review-waiting'
 import { reviewWaitingLetter } from './review-waiting'
 
@@ -23,6 +25,7 @@ interface DataByName {
   'forgotten-password': ForgottenPasswordData
   'password-changed': PasswordChangedData
   'invitation': InvitationData
+  'review-sent': ReviewSentData
   'review-waiting': ReviewWaitingData
   'answered': AnsweredData
 }
@@ -37,6 +40,7 @@ const letters: { [N in LetterName]: (data: DataByName[N]) => Letter } = {
   'forgotten-password': forgottenPasswordLetter,
   'password-changed': passwordChangedLetter,
   'invitation': invitationLetter,
+  'review-sent': reviewSentLetter,
   'review-waiting': reviewWaitingLetter,
   'answered': answeredLetter,
 }

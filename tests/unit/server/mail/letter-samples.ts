@@ -37,6 +37,16 @@ export const letterSamples: { [N in LetterName]: LetterData<N> } = {
     inviteUrl: link(`/invite?token=${token}`),
     validUntilText: 'Tue 26 May, 09:00',
   },
+  'review-sent': {
+    studioName,
+    readerName: 'Joel Okafor',
+    studentName: 'Joel Okafor',
+    coachName: 'Mara Lindqvist',
+    questionTitle: 'Heavy 7-irons, always two in a row',
+    promiseText: 'Thu 21 May, 17:00',
+    reviewUrl: link('/reviews/0196f0a2-7c11-7b52-9d0e-3f4f5b8a1c22'),
+    isGuardianCopy: false,
+  },
   'review-waiting': {
     studioName,
     studentName: 'Joel Okafor',
