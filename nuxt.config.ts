@@ -40,9 +40,6 @@ export default defineNuxtConfig({
     },
   },
 
-  tailwindcss: { cssPath: '~/assets/main.css', viewer: false },
-  auth: { loadStrategy: 'none' },
-
   runtimeConfig: {
     // Name and password come from NUXT_SESSION_NAME and NUXT_SESSION_PASSWORD.
     session: {
@@ -64,12 +61,12 @@ export default defineNuxtConfig({
     esbuild: { options: { target: 'node20' } },
   },
 
+  vite: { build: { target: 'es2022' } },
+
   typescript: {
     strict: true,
     tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true, noImplicitOverride: true } },
   },
-
-  vite: { build: { target: 'es2022' } },
 
   hooks: {
     'nitro:init'(nitro) {
@@ -86,6 +83,7 @@ export default defineNuxtConfig({
       })
     },
   },
+  auth: { loadStrategy: 'none' },
 
   eslint: {
     config: {
@@ -124,12 +122,14 @@ export default defineNuxtConfig({
       referrerPolicy: 'strict-origin-when-cross-origin',
       xFrameOptions: 'DENY',
       permissionsPolicy: {
-        'camera': ['self'],
-        'fullscreen': ['self'],
-        'geolocation': [],
-        'microphone': [],
-        'payment': [],
+        camera: ['self'],
+        fullscreen: ['self'],
+        geolocation: [],
+        microphone: [],
+        payment: [],
       },
     },
   },
+
+  tailwindcss: { cssPath: '~/assets/main.css', viewer: false },
 })

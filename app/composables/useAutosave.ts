@@ -1,3 +1,4 @@
+import { getCurrentScope, onScopeDispose, readonly, ref } from 'vue'
 import { readErrorAnswer, type ReadError } from '~/utils/errors'
 
 /** `waiting`: changed and soon to be saved; `failed`: refused or not reached, and tried again when `isPassing`. */
@@ -86,7 +87,7 @@ export function useAutosave(save: () => Promise<void>, delayMs = 800) {
   }
 
   const tryAgain = () => void (state.value === 'failed' && flush())
-  if (import.meta.client) {
+  if ('window' in globalThis && getCurrentScope() !== undefined) {
     window.addEventListener('online', tryAgain)
     onScopeDispose(() => {
       window.removeEventListener('online', tryAgain)

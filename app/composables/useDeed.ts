@@ -1,3 +1,4 @@
+import { readonly, ref } from 'vue'
 import { readErrorAnswer, type ReadError } from '~/utils/errors'
 
 /**

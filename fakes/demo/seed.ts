@@ -25,17 +25,23 @@ export interface Rehearsal {
  * The stand-ins must be running; the app must not.
  */
 export async function seedDemo(environment: Record<string, string>): Promise<void> {
-  // Said once a start otherwise: the SDK will ask for a newer Node next year.
-  process.env.AWS_SDK_JS_NODE_VERSION_SUPPORT_WARNING_DISABLED ??= 'true'
-  const app = createApp(readSettings(environment, '.output/server/index.mjs'))
+  const app = await openApp(environment)
   try {
-    await app.ready
     const rehearsal = await insertStudio(app, Date.now())
     await insertDemoReviews(rehearsal)
   }
   finally {
     await app.close()
   }
+}
+
+/** The app's insides without its server, with an up-to-date database. The caller closes it. */
+export async function openApp(environment: Record<string, string>): Promise<App> {
+  // Said once a start otherwise: the SDK will ask for a newer Node next year.
+  process.env.AWS_SDK_JS_NODE_VERSION_SUPPORT_WARNING_DISABLED ??= 'true'
+  const app = createApp(readSettings(environment, '.output/server/index.mjs'))
+  await app.ready
+  return app
 }
 
 /** People, hours, offers and credits; no reviews. */

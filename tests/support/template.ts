@@ -5,9 +5,7 @@ import { startBuiltApp } from '#fakes/demo/app-process'
 import { buildOnce } from '#fakes/demo/build'
 import { appEnvironment } from '#fakes/demo/environment'
 import { DEMO_ACCOUNTS, DEMO_PASSWORD } from '#fakes/demo/people'
-import { insertStudio } from '#fakes/demo/seed'
-import { createApp } from '#server/app'
-import { readSettings } from '#server/settings'
+import { insertStudio, openApp } from '#fakes/demo/seed'
 
 export const TEMPLATE_DIR = '.test/template'
 
@@ -19,8 +17,7 @@ export async function makeTemplate(): Promise<void> {
   rmSync(TEMPLATE_DIR, { recursive: true, force: true })
   mkdirSync(TEMPLATE_DIR, { recursive: true })
   const environment = { ...appEnvironment(PORTS, TEMPLATE_DIR), NUXT_SESSION_NAME: '__Host-turfnote-test', LIMITS_FACTOR: '1000' }
-  const app = createApp(readSettings(environment, '.output/server/index.mjs'))
-  await app.ready
+  const app = await openApp(environment)
   await insertStudio(app, Date.now())
   await app.close()
 

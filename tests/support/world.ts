@@ -46,7 +46,7 @@ export async function startWorld({ index, environment: extra = {} }: WorldOption
   const cookies = readCookies(join(TEMPLATE_DIR, 'cookies.json'))
   const clockFile = join(dataDir, 'clock')
   const standIns = await startStandIns(addresses, dataDir)
-  const environment = {
+  const environment: Record<string, string> = {
     ...appEnvironment(addresses, dataDir),
     // One name for every world, so that the template's cookies hold everywhere.
     NUXT_SESSION_NAME: '__Host-turfnote-test',

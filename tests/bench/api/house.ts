@@ -1,3 +1,4 @@
+import { randomUUID } from 'node:crypto'
 import { mkdirSync, rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { setTimeout as wait } from 'node:timers/promises'
@@ -34,40 +35,60 @@ export async function openHouse(reviewCount: number): Promise<House> {
   rmSync(DATA_DIR, { recursive: true, force: true })
   mkdirSync(DATA_DIR, { recursive: true })
   const environment = { ...appEnvironment(ADDRESSES, DATA_DIR), LIMITS_FACTOR: '100000', ...profiling() }
-  const standIns = await startStandIns(ADDRESSES, DATA_DIR)
-  const reviewIds = await makeStudio(environment, reviewCount)
-  const app = await startBuiltApp(environment, { isQuiet: true })
-  const yardstick = startChild('tests/bench/api/yardstick.ts', {
-    PORT: String(YARDSTICK_PORT), DATABASE_PATH: join(DATA_DIR, 'yardstick.sqlite'), ROWS: String(reviewCount),
-  })
-  await nextMessage(yardstick, 20_000)
-  const cookie = await signIn(app.url, 'coach@demo.turfnote.test')
-  let sent = 0
+  const opened: (() => Promise<void>)[] = []
+  const close = async (): Promise<void> => {
+    for (const end of opened.reverse()) await end()
+    rmSync(DATA_DIR, { recursive: true, force: true })
+  }
+  try {
+    const standIns = await startStandIns(ADDRESSES, DATA_DIR)
+    opened.push(() => standIns.close())
+    const reviewIds = await makeStudio(environment, reviewCount)
+    const yardstick = startChild('tests/bench/api/yardstick.ts', {
+      PORT: String(YARDSTICK_PORT), DATABASE_PATH: join(DATA_DIR, 'yardstick.sqlite'), ROWS: String(reviewCount),
+    })
+    opened.push(() => endChild(yardstick))
+    await nextMessage(yardstick, 20_000)
+    const app = await startBuiltApp(environment, { isQuiet: true })
+    opened.push(() => app.stop())
+    const cookie = await signIn(app.url, 'coach@demo.turfnote.test')
+    return {
+      appPort: ADDRESSES.appPort,
+      yardstickPort: YARDSTICK_PORT,
+      reviewIds,
+      request: (method, path, body) => requestOf({ method, path, body, cookie, origin: app.url }),
+      untilQuiet: () => untilNoLetterWaits(environment.DATABASE_PATH ?? ''),
+      close,
+    }
+  }
+  catch (error) {
+    await close()
+    throw error
+  }
+}
+
+interface Asked {
+  method: 'GET' | 'POST'
+  path: string
+  body: unknown
+  cookie: string
+  origin: string
+}
+
+function requestOf({ method, path, body, cookie, origin }: Asked): LoadRequest {
+  const headers = { 'sec-fetch-site': 'same-origin', cookie, 'accept': 'application/json' }
+  if (method === 'GET') return { method, path, headers, body: '' }
   return {
-    appPort: ADDRESSES.appPort,
-    yardstickPort: YARDSTICK_PORT,
-    reviewIds,
-    request(method, path, body) {
-      sent += 1
-      const same = { 'sec-fetch-site': 'same-origin', cookie, 'accept': 'application/json' }
-      return method === 'GET'
-        ? { method, path, headers: same, body: '' }
-        : { method, path, headers: { ...same, 'origin': app.url, 'content-type': 'application/json', 'idempotency-key': `bench-request-${sent}` }, body: JSON.stringify(body) }
-    },
-    untilQuiet: () => untilNoLetterWaits(join(DATA_DIR, 'turfnote.sqlite')),
-    async close() {
-      await app.stop()
-      await endChild(yardstick)
-      await standIns.close()
-      rmSync(DATA_DIR, { recursive: true, force: true })
-    },
+    method, path, body: JSON.stringify(body), headers: { ...headers, origin, 'content-type': 'application/json', 'idempotency-key': randomUUID() },
   }
 }
 
 /** `BENCH_PROFILE=<folder>` writes a profile of the server there, to be opened in a browser's developer tools. */
 function profiling(): Record<string, string> {
   const folder = process.env.BENCH_PROFILE
-  return folder ? { NODE_OPTIONS: `--cpu-prof --cpu-prof-dir=${folder}` } : {}
+  if (!folder) return {}
+  mkdirSync(folder, { recursive: true })
+  return { BENCH_PROFILE: folder, NODE_OPTIONS: '--import ./tests/bench/profile.mjs' }
 }
 
 async function signIn(url: string, email: string): Promise<string> {

@@ -1,6 +1,5 @@
 import { FetchError } from 'ofetch'
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
-import { onScopeDispose, readonly, ref } from 'vue'
 import { useAutosave } from '~/composables/useAutosave'
 import { useDeed } from '~/composables/useDeed'
 
@@ -14,10 +13,6 @@ const lost = () => new FetchError('no answer')
 
 beforeEach(() => {
   vi.useFakeTimers()
-  // Composables take these by auto-import.
-  vi.stubGlobal('ref', ref)
-  vi.stubGlobal('readonly', readonly)
-  vi.stubGlobal('onScopeDispose', onScopeDispose)
   vi.stubGlobal('window', globalThis)
 })
 afterEach(() => {
