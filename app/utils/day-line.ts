@@ -1,5 +1,5 @@
 import type { QueueSpan } from '#shared/types/reviews'
-import { formatDay, formatHour } from './times'
+import { formatDay, formatHour } from '#shared/utils/times'
 
 /** Screen maths of the day line: many spans of time on one axis, nights drawn narrower than they are. */
 

@@ -1,7 +1,7 @@
 import type { QueueAnswer, QueueRow, ReviewRow, ReviewView } from '#shared/types/reviews'
 import type { Role } from '#shared/types/people'
 import { stateWords } from '#shared/domain/review/state-words'
-import { formatDay, formatHour, formatMoment, formatWorkingTime } from './times'
+import { formatDay, formatHour, formatMoment, formatWorkingTime } from '#shared/utils/times'
 
 const NUMBER_WORDS = ['No', 'One', 'Two', 'Three', 'Four', 'Five', 'Six', 'Seven', 'Eight', 'Nine', 'Ten', 'Eleven', 'Twelve']
 

@@ -5,5 +5,5 @@ import { anyone } from '#server/utils/guards'
 
 export default defineEventHandler(event => answer(event, async (): Promise<SessionAnswer> => {
   const ctx = await anyone(event)
-  return { viewer: await findOwnViewer(ctx) }
+  return { viewer: await findOwnViewer(ctx), nowMs: ctx.nowMs }
 }))

@@ -12,5 +12,5 @@ export default defineEventHandler(event => answer(event, async (): Promise<Sessi
   const input = await readJson(event, signInSchema)
   const { viewer, sessionId } = await signIn(ctx, { ...input, address: clientAddress(event.node.req, ctx.settings) })
   await giveSessionCookie(event, sessionId)
-  return { viewer }
+  return { viewer, nowMs: ctx.nowMs }
 }, { repeated: 'again' }))

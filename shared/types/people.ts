@@ -19,6 +19,8 @@ export interface Viewer {
 /** `GET /api/session`: `viewer` is null for a visitor. */
 export interface SessionAnswer {
   viewer: Viewer | null
+  /** The server's moment: screens count from it, since a phone's clock may be wrong. */
+  nowMs: number
 }
 
 /** A person as others may see them. */

@@ -3,7 +3,7 @@ import type { World } from '#tests/support/world'
 import { startWorld } from '#tests/support/world'
 
 /** The first worker of the browser tests has this number; server tests count from 1. */
-const FIRST_INDEX = 20
+const FIRST_INDEX = 30
 
 interface Watched {
   /** Everything that a page complained of: console errors and warnings, thrown errors. */

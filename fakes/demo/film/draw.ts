@@ -17,11 +17,10 @@ export function drawBackground(brush: Brush, timeline: Timeline): void {
   drawScene(brush, timeline.camera, timeline.clip.hands)
 }
 
-/** One frame over its background; says where each mark was drawn, in pixels of the frame. */
-export function drawFrame(brush: Brush, background: CanvasImageSource, timeline: Timeline, clipS: number): DrawnMarks {
+/** What moves in one frame, over the background; says where each mark was drawn, in pixels of the frame. */
+export function drawFrame(brush: Brush, timeline: Timeline, clipS: number): DrawnMarks {
   const { camera, clip } = timeline
   const moment = momentAt(timeline, clipS)
-  brush.drawImage(background, 0, 0)
   drawShadow(brush, camera, moment.body, clip.club, lightFor(camera))
   if (moment.ball) drawBallShadow(brush, camera, moment.ball)
   if (CLUBS[clip.club].teeMm > 0) drawTee(brush, camera, CLUBS[clip.club].teeMm)

@@ -44,7 +44,8 @@ async function encode(timeline: Timeline, background: HTMLCanvasElement, bitsPer
   const drawn: DrawnMarks[] = []
   const step = timeline.clip.framesPerSecond / KEY_FRAMES_PER_SECOND
   for (let index = 0; index < timeline.frameCount; index++) {
-    drawn.push(drawFrame(brush, background, timeline, secondsOf(timeline, index)))
+    brush.drawImage(background, 0, 0)
+    drawn.push(drawFrame(brush, timeline, secondsOf(timeline, index)))
     await source.add(secondsOf(timeline, index), 1 / timeline.clip.framesPerSecond, { keyFrame: index % step === 0 })
   }
   await output.finalize()
@@ -75,7 +76,8 @@ function around(index: number): number[] {
 /** Mean difference of the pictures' brightness, 0 to 255. */
 function difference(shown: HTMLCanvasElement | OffscreenCanvas, timeline: Timeline, background: HTMLCanvasElement, index: number): number {
   const canvas = blank()
-  drawFrame(brushOf(canvas), background, timeline, secondsOf(timeline, index))
+  brushOf(canvas).drawImage(background, 0, 0)
+  drawFrame(brushOf(canvas), timeline, secondsOf(timeline, index))
   const copy = blank()
   brushOf(copy).drawImage(shown, 0, 0)
   const [a, b] = [pixels(copy), pixels(canvas)]

@@ -3,7 +3,7 @@ import type { Pixel } from './camera'
 /** What this drawing needs of a canvas; both kinds of canvas have it. */
 export type Brush = Pick<
   CanvasRenderingContext2D,
-  'beginPath' | 'moveTo' | 'lineTo' | 'quadraticCurveTo' | 'arc' | 'ellipse' | 'closePath' | 'fill' | 'stroke' | 'fillRect' | 'createLinearGradient' | 'createRadialGradient' | 'fillStyle' | 'strokeStyle' | 'lineWidth' | 'lineJoin' | 'lineCap' | 'globalAlpha' | 'save' | 'restore' | 'drawImage'
+  'beginPath' | 'moveTo' | 'lineTo' | 'arc' | 'ellipse' | 'closePath' | 'fill' | 'stroke' | 'fillRect' | 'createLinearGradient' | 'createRadialGradient' | 'fillStyle' | 'strokeStyle' | 'lineWidth' | 'lineJoin' | 'lineCap' | 'globalAlpha' | 'save' | 'restore'
 >
 
 /** Light comes from the upper left of the picture. */
@@ -64,9 +64,11 @@ export function tracePolygon(brush: Brush, corners: readonly Pixel[]): void {
 export function traceCapsule(brush: Brush, from: Pixel, fromPx: number, to: Pixel, toPx: number): void {
   const far = Math.hypot(to.x - from.x, to.y - from.y)
   if (far <= Math.abs(fromPx - toPx) + 0.01) {
-    const [centre, radius] = fromPx > toPx ? [from, fromPx] : [to, toPx]
-    brush.moveTo(centre.x + radius, centre.y)
-    brush.arc(centre.x, centre.y, radius, 0, 2 * Math.PI)
+    // One disc covers the other: a limb that points at the lens.
+    for (const [centre, radius] of [[from, fromPx], [to, toPx]] as const) {
+      brush.moveTo(centre.x + radius, centre.y)
+      brush.arc(centre.x, centre.y, radius, 0, 2 * Math.PI)
+    }
     return
   }
   const along = Math.atan2(to.y - from.y, to.x - from.x)

@@ -15,5 +15,5 @@ export default defineEventHandler(event => answer(event, async (): Promise<Sessi
     ...input, isRepeated: isRepeated(event, ctx), address: clientAddress(event.node.req, ctx.settings),
   })
   await giveSessionCookie(event, sessionId)
-  return { viewer }
+  return { viewer, nowMs: ctx.nowMs }
 }, { repeated: 'again' }))

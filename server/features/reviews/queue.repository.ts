@@ -38,9 +38,11 @@ export async function listOpenTurnarounds(
 
 export type QueueRecord = Awaited<ReturnType<typeof listOpenTurnarounds>>[number]
 
+/** Open turnarounds, or those whose clock runs out by `dueBeforeMs`: one that stands still is not due. */
 export async function countOpenTurnarounds(db: Database, viewer: ViewerFacts, dueBeforeMs: number | undefined): Promise<number> {
   const { count } = await openTurnarounds(db, viewer)
-    .$if(dueBeforeMs !== undefined, query => query.where('turnarounds.promised_at_ms', '<=', dueBeforeMs ?? 0))
+    .$if(dueBeforeMs !== undefined, query => query
+      .where('turnarounds.promised_at_ms', '<=', dueBeforeMs ?? 0).where('turnarounds.status', '=', 'running'))
     .select(eb => eb.fn.countAll<number>().as('count'))
     .executeTakeFirstOrThrow()
   return count

@@ -18,10 +18,16 @@ const YARDSTICK_PORT = 6690
 const DATA_DIR = join('.bench', 'data')
 const DRAIN_LIMIT_MS = 120_000
 
+/** One of the two that are under load. */
+export interface Server {
+  port: number
+  pid: number
+}
+
 /** The built server on a seeded database, and the yardstick beside it; only one of them is under load at a time. */
 export interface House {
-  appPort: number
-  yardstickPort: number
+  app: Server
+  yardstick: Server
   /** The reviews that wait, in order of promise. */
   reviewIds: string[]
   /** As the product's own pages send it, from a coach who signed in. */
@@ -34,7 +40,7 @@ export interface House {
 export async function openHouse(reviewCount: number): Promise<House> {
   rmSync(DATA_DIR, { recursive: true, force: true })
   mkdirSync(DATA_DIR, { recursive: true })
-  const environment = { ...appEnvironment(ADDRESSES, DATA_DIR), LIMITS_FACTOR: '100000', ...profiling() }
+  const environment: Record<string, string> = { ...appEnvironment(ADDRESSES, DATA_DIR), LIMITS_FACTOR: '100000', ...profiling() }
   const opened: (() => Promise<void>)[] = []
   const close = async (): Promise<void> => {
     for (const end of opened.reverse()) await end()
@@ -53,8 +59,8 @@ export async function openHouse(reviewCount: number): Promise<House> {
     opened.push(() => app.stop())
     const cookie = await signIn(app.url, 'coach@demo.turfnote.test')
     return {
-      appPort: ADDRESSES.appPort,
-      yardstickPort: YARDSTICK_PORT,
+      app: { port: ADDRESSES.appPort, pid: app.pid },
+      yardstick: { port: YARDSTICK_PORT, pid: yardstick.pid ?? 0 },
       reviewIds,
       request: (method, path, body) => requestOf({ method, path, body, cookie, origin: app.url }),
       untilQuiet: () => untilNoLetterWaits(environment.DATABASE_PATH ?? ''),

@@ -1,9 +1,10 @@
 import type { BenchRow, Pair } from '../bench'
 import { rowFrom } from '../bench'
-import type { Load } from '../load/load'
+import type { Load, Measured } from '../load/load'
 import { ratePerSecond } from '../load/load'
-import type { LoadRequest, LoadResult } from '../load/job'
+import type { LoadRequest } from '../load/job'
 import { describeRun } from './describe'
+import type { Server } from './house'
 import { openHouse } from './house'
 
 const RUNS = 5
@@ -17,11 +18,11 @@ const AIM = 0.5
 export async function measureMoves(load: Load, tell: (line: string) => void): Promise<BenchRow[]> {
   const house = await openHouse(WARM_UP + RUNS * PER_RUN)
   try {
-    const send = (port: number, requests: LoadRequest[]): Promise<LoadResult> =>
-      load.run({ port, connections: CONNECTIONS, requests, order: 'once', limitMs: LIMIT_MS, expectedStatus: 200 })
-    const insert = (count: number) => send(house.yardstickPort, Array.from({ length: count }, bareInsert))
-    const takeUp = (ids: string[]) => send(house.appPort, ids.map(id => house.request('POST', `/api/reviews/${id}/take-up`, {})))
-    const answer = (ids: string[]) => send(house.appPort, ids.map(id => house.request('POST', `/api/reviews/${id}/answer`, { version: 1 })))
+    const send = ({ port, pid }: Server, requests: LoadRequest[]): Promise<Measured> =>
+      load.run({ port, connections: CONNECTIONS, requests, order: 'once', limitMs: LIMIT_MS, expectedStatus: 200 }, pid)
+    const insert = (count: number) => send(house.yardstick, Array.from({ length: count }, bareInsert))
+    const takeUp = (ids: string[]) => send(house.app, ids.map(id => house.request('POST', `/api/reviews/${id}/take-up`, {})))
+    const answer = (ids: string[]) => send(house.app, ids.map(id => house.request('POST', `/api/reviews/${id}/answer`, { version: 1 })))
 
     const warmUp = house.reviewIds.slice(0, WARM_UP)
     await insert(WARM_UP)

@@ -1,10 +1,11 @@
 import type { BenchRow, Pair } from '../bench'
 import { rowFrom } from '../bench'
-import type { Load } from '../load/load'
+import type { Load, Measured } from '../load/load'
 import { ratePerSecond } from '../load/load'
-import type { LoadRequest, LoadResult } from '../load/job'
-import { openHouse } from './house'
+import type { LoadRequest } from '../load/job'
 import { describeRun } from './describe'
+import type { Server } from './house'
+import { openHouse } from './house'
 
 const RUNS = 5
 const CONNECTIONS = 32
@@ -20,15 +21,15 @@ export async function measureQueue(load: Load, tell: (line: string) => void): Pr
   try {
     const queue = house.request('GET', '/api/desk/queue?limit=25')
     const bare: LoadRequest = { method: 'GET', path: '/rows', headers: { accept: 'application/json' }, body: '' }
-    const run = (port: number, request: LoadRequest, limitMs: number): Promise<LoadResult> =>
-      load.run({ port, connections: CONNECTIONS, requests: [request], order: 'again', limitMs, expectedStatus: 200 })
+    const run = ({ port, pid }: Server, request: LoadRequest, limitMs: number): Promise<Measured> =>
+      load.run({ port, connections: CONNECTIONS, requests: [request], order: 'again', limitMs, expectedStatus: 200 }, pid)
 
-    await run(house.yardstickPort, bare, WARM_UP_MS)
-    await run(house.appPort, queue, WARM_UP_MS)
+    await run(house.yardstick, bare, WARM_UP_MS)
+    await run(house.app, queue, WARM_UP_MS)
     const pairs: Pair[] = []
     for (let index = 0; index < RUNS; index += 1) {
-      const yardstick = await run(house.yardstickPort, bare, RUN_MS)
-      const measured = await run(house.appPort, queue, RUN_MS)
+      const yardstick = await run(house.yardstick, bare, RUN_MS)
+      const measured = await run(house.app, queue, RUN_MS)
       tell(describeRun('queue page', measured, yardstick))
       pairs.push({ value: ratePerSecond(measured), yardstick: ratePerSecond(yardstick) })
     }

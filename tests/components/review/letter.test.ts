@@ -21,7 +21,7 @@ const letter: LetterView = {
   coach: { id: 'c', name: 'Mara Lindqvist', hasPicture: false },
 }
 const turnaround: TurnaroundView = {
-  kind: 'answer', status: 'stopped', startedAtMs: 0, promisedAtMs: Date.UTC(2026, 4, 12, 13), stoppedAtMs: ANSWERED_AT_MS, isLate: false,
+  kind: 'answer', status: 'stopped', startedAtMs: 0, promisedAtMs: Date.UTC(2026, 4, 12, 13), stoppedAtMs: ANSWERED_AT_MS, timeInHandMs: null, isLate: false,
 }
 
 function show(change: Partial<LetterView> = {}, clock: TurnaroundView | null = turnaround, timeZone = 'Europe/London') {

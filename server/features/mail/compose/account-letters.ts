@@ -6,7 +6,7 @@ import { findUser } from '#server/features/people/user.repository'
 import { writeLetter } from '../letters'
 import type { Composer, Material } from './material'
 import { pageUrl } from './material'
-import { momentText } from './moment'
+import { formatMoment } from '#shared/utils/times'
 
 export const confirmAddress: Composer = async (material) => {
   const link = await findLiveLink(material, 'confirm')
@@ -32,7 +32,7 @@ export const forgottenPassword: Composer = async (material) => {
 async function findLiveLink({ ctx, row, reader, timeZone }: Material, purpose: TokenRow['purpose']) {
   const token = await findTokenById(ctx.db, row.subject_id)
   if (!reader || row.secret === null || token?.purpose !== purpose || token.used_at_ms !== null) return undefined
-  return { name: reader.name, secret: row.secret, validUntilText: momentText(token.expires_at_ms, timeZone) }
+  return { name: reader.name, secret: row.secret, validUntilText: formatMoment(token.expires_at_ms, timeZone) }
 }
 
 export const addressAlreadyKnown: Composer = async ({ ctx, studio, reader }) => reader && writeLetter('address-already-known', {
@@ -45,7 +45,7 @@ export const addressAlreadyKnown: Composer = async ({ ctx, studio, reader }) => 
 export const passwordChanged: Composer = async ({ ctx, row, studio, reader, timeZone }) => reader && writeLetter('password-changed', {
   studioName: studio.name,
   name: reader.name,
-  whenText: momentText(row.created_at_ms, timeZone),
+  whenText: formatMoment(row.created_at_ms, timeZone),
   forgotUrl: pageUrl(ctx, '/forgot'),
 })
 
@@ -58,6 +58,6 @@ export const invitation: Composer = async ({ ctx, row, studio, timeZone }) => {
     inviterName: inviter?.name ?? studio.name,
     role: invite.role,
     inviteUrl: pageUrl(ctx, '/invite', row.secret),
-    validUntilText: momentText(invite.expires_at_ms, timeZone),
+    validUntilText: formatMoment(invite.expires_at_ms, timeZone),
   })
 }

@@ -3,7 +3,7 @@ import { writeLetter } from '../letters'
 import { recipientsOf } from '../recipients'
 import type { Composer } from './material'
 import { pageUrl } from './material'
-import { momentText } from './moment'
+import { formatMoment } from '#shared/utils/times'
 import type { AnswerSubject } from './review-subject.repository'
 import { findAnswerSubject, findWaitingSubject } from './review-subject.repository'
 
@@ -20,7 +20,7 @@ export const reviewWaiting: Composer = async ({ ctx, row, studio, reader, timeZo
         studentName: review.student_name,
         coachName: review.chosen_coach_name ?? undefined,
         questionTitle: review.title,
-        promiseText: momentText(review.promised_at_ms, timeZone),
+        promiseText: formatMoment(review.promised_at_ms, timeZone),
         reviewUrl: pageUrl(ctx, `/desk/${review.id}`),
       })
     : undefined
@@ -37,7 +37,7 @@ export const reviewSent: Composer = async ({ ctx, row, studio, reader, timeZone 
     studentName: review.student_name,
     coachName: review.chosen_coach_name ?? undefined,
     questionTitle: review.title,
-    promiseText: momentText(review.promised_at_ms, timeZone),
+    promiseText: formatMoment(review.promised_at_ms, timeZone),
     reviewUrl: pageUrl(ctx, `/reviews/${review.id}`),
     isGuardianCopy: recipient.isGuardian,
   })

@@ -7,6 +7,9 @@ import { POSITIONS } from '#fakes/demo/film/swing-kinds'
 import { timelineOf } from '#fakes/demo/film/timeline'
 import { makeTruth, marksAt } from '#fakes/demo/film/truth'
 import { QUANTUM, readTruth } from '#fakes/demo/film/truth-file'
+import { examineFilm } from '#server/features/film/reading/examine-film'
+import { RangeReader } from '#server/features/film/reading/range-reader'
+import { startRangeServer } from '#tests/support/film/range-server'
 
 const MB = 1024 * 1024
 
@@ -102,10 +105,26 @@ describe.each(FILM_CLIPS.map(clip => [clip.name, clip] as const))('%s', (name, c
     expect(times.at(-1)).toBeLessThan(truth.seconds.at(-1) ?? 0)
   })
 
-  it('shows club and ball at impact, and lets impact fall between two frames', () => {
+  it('is accepted by the server\'s own reading of film', async () => {
+    const bytes = readFileSync(madeClipPath(name, 'mp4'))
+    const store = await startRangeServer()
+    const reading = await examineFilm(new RangeReader({ url: store.put(name, bytes), bytes: bytes.length })).finally(() => store.close())
+    expect(reading).toMatchObject({ kind: 'accepted', film: { frameCount: truth.ticks.length } })
+  })
+
+  it('hides what the golfer covers', () => {
+    const isHidden = (mark: typeof MARKS[number]) => truth.marks[mark].hidden.some(([from, to]) => from <= 0 && to > 0)
+    expect(isHidden('seatRear')).toBe(clip.view === 'face_on')
+    expect(isHidden('leadHeel')).toBe(clip.view === 'down_the_line')
+    expect(isHidden('leadShoulder')).toBe(clip.view === 'down_the_line')
+    for (const mark of ['head', 'trailShoulder', 'trailKnee', 'trailToe', 'clubHead'] as const) expect(isHidden(mark), mark).toBe(false)
+  })
+
+  it('shows the strike, and lets impact fall between two frames', () => {
     for (const { positionsS } of truth.swings) {
       const before = Math.floor(positionsS.impact * clip.framesPerSecond)
-      for (const mark of ['ball', 'clubHead'] as const)
+      // Down the line the club head comes between lens and ball, as on real film.
+      for (const mark of clip.view === 'face_on' ? ['ball', 'clubHead'] as const : ['clubHead'] as const)
         expect(truth.marks[mark].hidden.some(([from, to]) => before >= from && before < to), mark).toBe(false)
       expect(positionsS.impact * clip.framesPerSecond - before).toBeCloseTo(0.37, 2)
     }

@@ -5,7 +5,7 @@ import { clientAddress } from '#server/features/people/client-address'
 import { emailKey } from '#server/features/people/email-key'
 import { takingAtLeast } from '#server/features/people/same-time'
 import { freeSlug, slugOf } from '#server/features/people/slug'
-import { momentText } from '#server/features/mail/compose/moment'
+import { formatMoment } from '#shared/utils/times'
 
 describe('client address', () => {
   function request(remoteAddress: string | undefined, forwarded?: string) {
@@ -86,8 +86,8 @@ describe('slug', () => {
 describe('moments in letters', () => {
   it('are in the zone of the reader', () => {
     const atMs = Date.UTC(2026, 4, 21, 15, 0)
-    expect(momentText(atMs, 'Europe/Lisbon')).toBe('Thu 21 May, 16:00')
-    expect(momentText(atMs, 'Asia/Tokyo')).toBe('Fri 22 May, 00:00')
-    expect(momentText(Date.UTC(2026, 8, 1), 'UTC')).toBe('Tue 1 Sep, 00:00')
+    expect(formatMoment(atMs, 'Europe/Lisbon')).toBe('Thu 21 May, 16:00')
+    expect(formatMoment(atMs, 'Asia/Tokyo')).toBe('Fri 22 May, 00:00')
+    expect(formatMoment(Date.UTC(2026, 8, 1), 'UTC')).toBe('Tue 1 Sep, 00:00')
   })
 })

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { formatDate, formatDay, formatHour, formatMoment, formatMomentWithYear, formatWorkingTime } from '~/utils/times'
+import { formatDate, formatDay, formatHour, formatMoment, formatMomentWithYear, formatWorkingTime } from '#shared/utils/times'
 
 /** Thursday 21 May 2026, 15:00 UTC. */
 const thursday = Date.UTC(2026, 4, 21, 15)
