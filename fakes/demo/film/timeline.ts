@@ -18,8 +18,11 @@ export const TIMESCALE = 57_600
 
 const STILL_BEFORE_S = 0.3
 const STILL_AFTER_S = 0.3
-/** From one finish to the next address: the club comes down and a new ball is rolled in. */
-const BETWEEN_S = 0.95
+/** From one finish to the next address: a new ball is rolled in, and the club comes down over it and is set behind it. */
+const BETWEEN_S = 1.2
+const SHARE_TO_HOVER = 0.72
+/** How far the arms are drawn in so that the club passes over the ball. */
+const DRAWN_IN_MM = 150
 /** Impact falls between two frames, as it does on real film. */
 const IMPACT_BETWEEN_FRAMES = 0.37
 
@@ -63,12 +66,11 @@ export function momentAt(timeline: Timeline, clipS: number): Moment {
   const { now, next } = swingsAround(timeline, clipS)
   const { clip, camera } = timeline
   const t = clipS - now.impactS
-  const share = next ? smooth((clipS - now.impactS - now.swing.endS - STILL_AFTER_S) / BETWEEN_S) : 0
+  const share = next ? Math.min(1, Math.max(0, (t - now.swing.endS - STILL_AFTER_S) / BETWEEN_S)) : 0
   const own = now.swing.channelsAt(t)
-  const channels = next && share > 0 ? blend(own, next.swing.channelsAt(next.swing.startS), share) : own
+  const channels = next && share > 0 ? betweenSwings(own, next.swing.channelsAt(next.swing.startS), share) : own
   const body = skeletonAt(channels, stanceFor(now.swing.kind), CLUBS[clip.club].lengthMm)
-  const rolled = share > 0 ? rollingBall(now.swing.kind, smooth(share * 1.6 - 0.3)) : undefined
-  const ball = share > 0.2 ? rolled : ballAt(now.swing.kind, t)
+  const ball = share > 0.1 ? rollingBall(now.swing.kind, smooth((share - 0.1) / 0.45)) : ballAt(now.swing.kind, t)
   const turned = (point: Vec3): Vec3 => clip.hands === 'right' ? point : mirrored(point)
   const seen = ball && isBallSeen(camera, turned(ball)) ? turned(ball) : undefined
   return {
@@ -96,6 +98,16 @@ function isBallSeen(camera: Camera, ball: Vec3): boolean {
 function smooth(share: number): number {
   const u = Math.min(1, Math.max(0, share))
   return u ** 3 * (10 - 15 * u + 6 * u * u)
+}
+
+/** From finish to address by way of a club that hovers behind the ball. */
+function betweenSwings(finish: Channels, address: Channels, share: number): Channels {
+  const hover = { ...address, armAngle: address.armAngle - 5, shaftAngle: address.shaftAngle - 17 }
+  if (share >= SHARE_TO_HOVER) return blend(hover, address, smooth((share - SHARE_TO_HOVER) / (1 - SHARE_TO_HOVER)))
+  const down = smooth(share / SHARE_TO_HOVER)
+  const lowered = blend(finish, hover, down)
+  // Greatest where the club passes over the ball, nothing at either end.
+  return { ...lowered, reach: lowered.reach - DRAWN_IN_MM * down ** 9 * (1 - down) / 0.9 ** 9 / 0.1 }
 }
 
 function blend(from: Channels, to: Channels, share: number): Channels {

@@ -203,6 +203,22 @@ describe('the clips', () => {
     }
   })
 
+  it('sets the club behind the next ball without touching it', () => {
+    const timeline = timelineOf(clip('right-three-face-on'))
+    const [first, second] = timeline.swings
+    if (!first || !second) throw new Error('There are not three swings.')
+    let nearestMm = Infinity
+    let hasBall = false
+    for (let clipS = first.impactS + first.swing.endS; clipS < second.impactS + second.swing.startS; clipS += 0.004) {
+      const { ball, body } = momentAt(timeline, clipS)
+      hasBall ||= ball !== undefined
+      if (ball) nearestMm = Math.min(nearestMm, distance(ball, body.clubHead))
+    }
+    expect(hasBall).toBe(true)
+    // At address itself the marked point is that far from the middle of the ball.
+    expect(nearestMm).toBeGreaterThan(distance(addressPoint(second.swing.kind), { x: 0, y: BALL_RADIUS_MM, z: 0 }) - 1)
+  })
+
   it.each(FILM_CLIPS.filter(each => each.view === 'face_on').map(each => [each.name, each] as const))('shows shaft and arms level in the picture when they are level in space: %s', (_, each) => {
     const timeline = timelineOf(each)
     for (const { swing, impactS } of timeline.swings) {
