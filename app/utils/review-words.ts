@@ -43,8 +43,9 @@ export function shortMoment(atMs: number, besideMs: number, timeZone: string): s
 /** The heading of the queue. */
 export function queueHeading(queue: QueueAnswer): string {
   if (queue.items.length === 0) return 'Nothing waits for you'
-  const { dueTodayCount, closesAtMs } = queue
+  const { dueTodayCount, closesAtMs, nowMs } = queue
   if (closesAtMs === null) return dueTodayCount === 0 ? 'Nothing due today' : `${countWords(dueTodayCount)} due today, your day off`
+  if (nowMs >= closesAtMs) return dueTodayCount === 0 ? 'You closed with nothing owed' : `${countWords(dueTodayCount)} still owed from today`
   return dueTodayCount === 0 ? 'Nothing due before you close today' : `${countWords(dueTodayCount)} due before you close today`
 }
 

@@ -1,11 +1,28 @@
+import type { WorkingCalendar } from '#shared/domain/turnaround/calendar'
 import { pauseTurnaround, stopTurnaround } from '#shared/domain/turnaround/moves'
 import { replayTurnaround } from '#shared/domain/turnaround/replay'
+import { workingSpans } from '#shared/domain/turnaround/spans'
+import { DAY_MS } from '#shared/domain/turnaround/zone'
 import type { Database } from '#server/database/client'
 import { updateReview } from '#server/features/reviews/review.repository'
 import { getCalendarsById } from '#server/features/turnaround/calendars'
 import { findTurnaround, insertTurnaroundEvent, listTurnaroundEvents, updateTurnaround } from '#server/features/turnaround/turnaround.repository'
 import { toEvent } from '#server/features/turnaround/turnaround.service'
 import { newId } from '#server/ids'
+
+/**
+ * When a clock began that has used `usedMs` of working time by now: so a demo at any hour has the same time in hand.
+ * @throws when the calendar holds less than that in the last 30 days.
+ */
+export function startedWithUsed(calendar: WorkingCalendar, nowMs: number, usedMs: number): number {
+  let leftMs = usedMs
+  for (const span of workingSpans(calendar, nowMs - 30 * DAY_MS, nowMs).reverse()) {
+    const lengthMs = span.toMs - span.fromMs
+    if (lengthMs >= leftMs) return span.toMs - leftMs
+    leftMs -= lengthMs
+  }
+  throw new RangeError('The demo has no such working time behind it.')
+}
 
 /** A waiting review whose student was asked for new film: its clock stands still. */
 export async function askedForFilm(db: Database, reviewId: string, atMs: number): Promise<void> {

@@ -5,7 +5,7 @@ import type { LetterDraft } from '#shared/types/reviews'
 export const HEAVY_LETTER: LetterDraft = {
   title: 'Why the heavy ones come in twos',
   leaveAlone: 'Joel, your set-up and the top of your swing are in good order, so we leave them alone. Everything that costs you contact happens in the last quarter second.',
-  saw: 'With the shaft level on the way down, the end of your grip hangs well behind the ball. **The wrists have already started to let go.** On the solid one you sent, the grip end is almost over the ball at the same moment.\n\nSeen from behind, nothing changes between the two: you stand up no earlier and the club comes down on the same line.',
+  saw: 'With the shaft level on the way down, the end of your grip hangs well behind the ball. **The wrists have already started to let go.** On the solid one you sent, the grip end is almost over the ball at the same moment.\n\nSeen from behind, you stand up no earlier than at the start, so that is not it.',
   why: 'Your hands slow down before the ball, so the club overtakes them early and meets the ground first. On the next one you lift to avoid the ground, and catch it thin. If a ball further forward in your stance played a part, your next film will show it.',
   howSure: 'fairly_sure',
   oneChange: 'Keep the grip end travelling past the ball before the wrists let go.',

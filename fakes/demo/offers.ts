@@ -1,3 +1,4 @@
+import type { WorkingCalendar } from '#shared/domain/turnaround/calendar'
 import type { Database } from '#server/database/client'
 import { insertCredit } from '#server/features/offers/credit.repository'
 import { insertCalendar } from '#server/features/turnaround/turnaround.repository'
@@ -7,21 +8,29 @@ import { DEMO_TIME_ZONE } from './people'
 const HOUR_MS = 60 * 60 * 1000
 const EVERY_DAY = [1, 2, 3, 4, 5, 6, 7]
 
+/** Working minutes of the day; the studio stands for "first free". */
+const HOURS = {
+  studio: { fromMinute: 9 * 60, toMinute: 18 * 60 },
+  coach: { fromMinute: 9 * 60, toMinute: 18 * 60 },
+  coach2: { fromMinute: 12 * 60, toMinute: 20 * 60 },
+} as const
+
+/** The hours by which a demo review is promised. */
+export function demoHours(coach: 'coach' | 'coach2' | null): WorkingCalendar {
+  return { timeZone: DEMO_TIME_ZONE, weekly: EVERY_DAY.map(weekday => ({ weekday, ...HOURS[coach ?? 'studio'] })), timeOff: [] }
+}
+
 /** Open every day, so that a demo on a Sunday has something to show. */
 export async function insertDemoHours(db: Database, nowMs: number, coachIds: { coach: string, coach2: string }): Promise<void> {
-  const rows = [
-    { coachId: null, fromMinute: 9 * 60, toMinute: 18 * 60 },
-    { coachId: coachIds.coach, fromMinute: 9 * 60, toMinute: 18 * 60 },
-    { coachId: coachIds.coach2, fromMinute: 12 * 60, toMinute: 20 * 60 },
-  ]
-  for (const { coachId, fromMinute, toMinute } of rows) {
+  for (const coach of [null, 'coach', 'coach2'] as const) {
+    const { timeZone, weekly, timeOff } = demoHours(coach)
     await insertCalendar(db, {
       id: newId(nowMs),
-      coach_id: coachId,
+      coach_id: coach === null ? null : coachIds[coach],
       version: 1,
-      time_zone: DEMO_TIME_ZONE,
-      weekly: JSON.stringify(EVERY_DAY.map(weekday => ({ weekday, fromMinute, toMinute }))),
-      time_off: '[]',
+      time_zone: timeZone,
+      weekly: JSON.stringify(weekly),
+      time_off: JSON.stringify(timeOff),
       created_at_ms: nowMs,
     })
   }

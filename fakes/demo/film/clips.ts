@@ -41,8 +41,15 @@ export function madeClipPath(name: FilmClipName, kind: 'mp4' | 'json'): string {
   return `fakes/demo/film/made/${name}.${kind}`
 }
 
-/** The clips that the demo's students send: three swings in front, of which the heavy and the thin one let go early. */
-export const DEMO_CLIPS: Readonly<Record<ClipView, string>> = {
+/** Three swings in front, of which the heavy and the thin one let go early, and one from behind. */
+const RIGHT_IRON: Readonly<Record<ClipView, string>> = {
   face_on: madeClipPath('right-three-face-on', 'mp4'),
   down_the_line: madeClipPath('right-early-down-the-line', 'mp4'),
+}
+
+/** The clips that the demo's students send. */
+export const DEMO_CLIPS: Readonly<Record<'right' | 'left' | 'driver', Readonly<Record<ClipView, string>>>> = {
+  right: RIGHT_IRON,
+  left: { face_on: madeClipPath('left-early-face-on', 'mp4'), down_the_line: madeClipPath('left-sound-down-the-line', 'mp4') },
+  driver: { ...RIGHT_IRON, face_on: madeClipPath('right-driver-face-on', 'mp4') },
 }

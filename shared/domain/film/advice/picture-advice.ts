@@ -7,13 +7,16 @@ import { findPictureScale } from './picture-scale'
 import { estimateHeadSpeed } from './speed'
 import { blurM } from './travel'
 
-/** The least that phones of the last ten years film at, and a hand is about ten pixels wide in it. Our choice. */
+/** The size next under 1080p that cameras offer. Our choice. */
 export const LOW_RESOLUTION_PX = 720
 
-/** Grass in daylight lies between 0.35 and 0.55; a dim hall under 0.2. Our choice, no published source. */
-export const DARK_BELOW_LUMA = 0.22
+/**
+ * Half of middle grey: a surface that reflects 18 % of the light is 0.461 in sRGB (1.055 · 0.18^(1/2.4) − 0.055), and
+ * cameras expose a picture to about that. Half of it is our choice, no published source.
+ */
+export const DARK_BELOW_LUMA = 0.23
 
-/** What phones go to in a hall; a common exposure, named only to show what darkness costs. */
+/** One exposure that any rate up to 500 frames a second allows, named only to show what darkness costs. */
 const DIM_EXPOSURE_S = 1 / 500
 
 /** Equipment Rules, part 4: at least 1.680 in. */

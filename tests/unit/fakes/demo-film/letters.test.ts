@@ -6,7 +6,7 @@ import * as letters from '#fakes/demo/letters'
 import { figuresOf, unsupportedFigures } from './letter-figures'
 
 /** All swings that the demo's students send. */
-const swings = FILM_CLIPS.filter(clip => Object.values(DEMO_CLIPS).includes(madeClipPath(clip.name, 'mp4'))).flatMap(clip => measuredTruth(clip))
+const swings = FILM_CLIPS.filter(clip => Object.values(DEMO_CLIPS.right).includes(madeClipPath(clip.name, 'mp4'))).flatMap(clip => measuredTruth(clip))
 
 function saying(saw: string): LetterDraft {
   return { ...letters.HEAVY_LETTER, saw }
