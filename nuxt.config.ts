@@ -55,7 +55,7 @@ export default defineNuxtConfig({
 
   nitro: {
     experimental: { tasks: true },
-    scheduledTasks: { '* * * * *': ['mail:send', 'film:read', 'people:tidy'] },
+    scheduledTasks: { '* * * * *': ['mail:send', 'film:read', 'money:settle', 'money:refund', 'people:tidy'], '17 * * * *': ['film:sweep'] },
     errorHandler: errorHandlers,
     typescript: { tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } } },
     esbuild: { options: { target: 'node20' } },

@@ -1,4 +1,5 @@
 import type { ViewerFacts } from './context'
+import type { Upload } from './utils/read-upload'
 import type { RepeatableRequest } from './write'
 
 declare module 'h3' {
@@ -7,6 +8,7 @@ declare module 'h3' {
     /** Who is signed in, found once a request. */
     viewer?: Promise<ViewerFacts | undefined>
     bodyText?: Promise<string>
+    uploads?: Promise<Upload[]>
     repeatable?: RepeatableRequest
   }
 }

@@ -16,6 +16,7 @@ const ALLOWANCES = {
   'link-address': { allowed: 30, seconds: 600 },
   'upload-account': { allowed: 40, seconds: 3600 },
   'picture-account': { allowed: 20, seconds: 3600 },
+  'photo-account': { allowed: 40, seconds: 3600 },
 } as const satisfies Record<string, { allowed: number, seconds: number }>
 
 export type LimitName = keyof typeof ALLOWANCES

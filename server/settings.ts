@@ -25,6 +25,7 @@ const environmentSchema = z.object({
   LIMITS_DATABASE_PATH: z.string().min(1).optional(),
   LIMITS_FACTOR: z.coerce.number().positive().default(1),
   FILM_READER_PATH: z.string().min(1).optional(),
+  FFMPEG_PATH: z.string().min(1).optional(),
   CLOCK_OFFSET_FILE: z.string().min(1).optional(),
   LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
 })
@@ -45,6 +46,8 @@ export interface Settings {
   mail: { smtpUrl: string, from: string }
   /** The worker that reads film; beside the built server unless said. */
   filmReaderPath: string
+  /** Converts film that browsers cannot show; such film is refused when there is none. */
+  ffmpegPath: string | undefined
   /** A file holding milliseconds by which the clock runs ahead; for rehearsals and tests. */
   clockOffsetFile: string | undefined
   logLevel: string
@@ -92,6 +95,7 @@ export function readSettings(environment: Record<string, string | undefined>, pr
     payments: { secretKey: env.STRIPE_SECRET_KEY, webhookSecret: env.STRIPE_WEBHOOK_SECRET, apiBase: env.STRIPE_API_BASE },
     mail: { smtpUrl: env.SMTP_URL, from: env.MAIL_FROM },
     filmReaderPath: resolve(env.FILM_READER_PATH ?? join(dirname(programPath), 'workers', 'film-reader.mjs')),
+    ffmpegPath: env.FFMPEG_PATH,
     clockOffsetFile: env.CLOCK_OFFSET_FILE,
     logLevel: env.LOG_LEVEL,
   }

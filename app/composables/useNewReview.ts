@@ -1,6 +1,7 @@
 import type { ChangeReview } from '#shared/schemas/reviews'
-import type { ReviewView } from '#shared/types/reviews'
+import type { ReviewView, SubmitAnswer } from '#shared/types/reviews'
 import type { FieldErrors } from '#shared/types/answers'
+import { rememberChoice, type PayMeans } from '~/utils/pay-means'
 
 /** What a student fills in, all of it text but the coach. */
 export interface ReviewFields {
@@ -67,15 +68,17 @@ export function useNewReview(draft: ReviewView | undefined) {
     return Object.fromEntries(result?.error?.issues.map(issue => [issue.path.join('.'), issue.message]) ?? [])
   }
 
-  /** The review as sent, or undefined (see `submitting.problem`). */
-  async function submit(offerId: string): Promise<ReviewView | undefined> {
+  /** Sent by credit, or kept for the card page whose address comes along; undefined when neither (see `submitting.problem`). */
+  async function submit(means: PayMeans): Promise<SubmitAnswer | undefined> {
     if (!await autosave.flush() || reviewId.value === undefined) return undefined
-    const sent = await submitting.run(headers => $fetch<ReviewView>(`/api/reviews/${reviewId.value}/submit`, {
-      method: 'POST', headers, body: { offerId, payBy: 'credit' },
-    }), offerId)
+    const answer = await submitting.run(headers => $fetch<SubmitAnswer>(`/api/reviews/${reviewId.value}/submit`, {
+      method: 'POST', headers, body: means,
+    }), JSON.stringify(means))
+    if (answer === undefined) return undefined
+    if (answer.checkoutUrl !== null && means.payBy === 'card') rememberChoice(answer.review.id, means)
     // The page of the review must not show it as the draft it was here.
-    if (sent !== undefined) clearNuxtData(`review-${sent.id}`)
-    return sent
+    clearNuxtData(`review-${answer.review.id}`)
+    return answer
   }
 
   return { reviewId, fields, touch: autosave.touch, saveState: autosave.state, saveProblem: autosave.problem, ensureDraft, findMissing, submit, submitting }

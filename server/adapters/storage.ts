@@ -1,7 +1,10 @@
+import { createReadStream } from 'node:fs'
+import { stat } from 'node:fs/promises'
 import {
   AbortMultipartUploadCommand, CompleteMultipartUploadCommand, CreateMultipartUploadCommand, DeleteObjectCommand, GetObjectCommand,
-  HeadObjectCommand, ListPartsCommand, PutObjectCommand, S3Client, UploadPartCommand,
+  HeadObjectCommand, ListMultipartUploadsCommand, ListObjectsV2Command, ListPartsCommand, PutObjectCommand, S3Client, UploadPartCommand,
 } from '@aws-sdk/client-s3'
+import type { ListMultipartUploadsCommandInput, ListObjectsV2CommandInput } from '@aws-sdk/client-s3'
 import { getSignedUrl } from '@aws-sdk/s3-request-presigner'
 
 /** A part that the store holds. Numbers count from 1. */
@@ -9,6 +12,21 @@ export interface StoredPart {
   number: number
   bytes: number
   etag: string
+}
+
+/** An upload that was begun and neither completed nor given up. */
+export interface StoredUpload {
+  key: string
+  uploadId: string
+  /** By the store's own clock. */
+  begunAtMs: number
+}
+
+export interface StoredObject {
+  key: string
+  bytes: number
+  /** By the store's own clock. */
+  changedAtMs: number
 }
 
 /** The store could not be reached or failed: try again later. */
@@ -32,10 +50,16 @@ export interface FilmStorage {
   /** Giving up what is already gone is no error. */
   abortUpload(key: string, uploadId: string): Promise<void>
   put(key: string, body: Uint8Array, contentType: string): Promise<void>
+  /** Stores a file of this machine without holding it in memory; what was at `key` is replaced. */
+  putFile(key: string, path: string, contentType: string): Promise<void>
   /** Size of an object in bytes; undefined when there is none. */
   findBytes(key: string): Promise<number | undefined>
   presignGet(key: string, seconds: number): Promise<string>
   remove(key: string): Promise<void>
+  /** Uploads that are open under `prefix`, a page of the store at a time, in order of key. */
+  uploadPages(prefix: string): AsyncGenerator<StoredUpload[]>
+  /** Objects under `prefix`, a page of the store at a time, in order of key (by bytes); at least one page, which may be empty. */
+  objectPages(prefix: string): AsyncGenerator<StoredObject[]>
 }
 
 interface StorageSettings {
@@ -47,7 +71,7 @@ interface StorageSettings {
 }
 
 /** Any S3-compatible store, through the AWS SDK. */
-export function createStorage({ endpoint, region, bucket: Bucket, accessKey, secretKey }: StorageSettings): FilmStorage {
+export function createStorage({ endpoint, region, bucket, accessKey, secretKey }: StorageSettings): FilmStorage {
   const client = new S3Client({
     endpoint,
     region,
@@ -59,6 +83,10 @@ export function createStorage({ endpoint, region, bucket: Bucket, accessKey, sec
     maxAttempts: 3,
   })
 
+  return { ...uploadsIn(client, bucket), ...objectsIn(client, bucket) }
+}
+
+function uploadsIn(client: S3Client, Bucket: string) {
   return {
     createUpload: (Key, ContentType) => mapping(async () => {
       const { UploadId } = await client.send(new CreateMultipartUploadCommand({ Bucket, Key, ContentType }))
@@ -86,8 +114,27 @@ export function createStorage({ endpoint, region, bucket: Bucket, accessKey, sec
     abortUpload: (Key, UploadId) => mapping(async () => {
       await client.send(new AbortMultipartUploadCommand({ Bucket, Key, UploadId })).catch(ignoreMissing)
     }),
+    async* uploadPages(Prefix) {
+      let markers: ListMultipartUploadsCommandInput | undefined = { Bucket, Prefix }
+      while (markers) {
+        const asked: ListMultipartUploadsCommandInput = markers
+        const page = await mapping(() => client.send(new ListMultipartUploadsCommand(asked)))
+        // What the store gives no time for is never old enough to be given up.
+        yield (page.Uploads ?? []).map(upload => ({ key: upload.Key ?? '', uploadId: upload.UploadId ?? '', begunAtMs: upload.Initiated?.getTime() ?? Infinity }))
+        markers = page.IsTruncated ? { Bucket, Prefix, KeyMarker: page.NextKeyMarker, UploadIdMarker: page.NextUploadIdMarker } : undefined
+      }
+    },
+  } satisfies Partial<FilmStorage>
+}
+
+function objectsIn(client: S3Client, Bucket: string) {
+  return {
     put: (Key, Body, ContentType) => mapping(async () => {
       await client.send(new PutObjectCommand({ Bucket, Key, Body, ContentType }))
+    }),
+    putFile: (Key, path, ContentType) => mapping(async () => {
+      const { size: ContentLength } = await stat(path)
+      await client.send(new PutObjectCommand({ Bucket, Key, Body: createReadStream(path), ContentLength, ContentType }))
     }),
     findBytes: Key => mapping(async () => {
       const head = await client.send(new HeadObjectCommand({ Bucket, Key })).catch(ignoreMissing)
@@ -97,7 +144,16 @@ export function createStorage({ endpoint, region, bucket: Bucket, accessKey, sec
     remove: Key => mapping(async () => {
       await client.send(new DeleteObjectCommand({ Bucket, Key }))
     }),
-  }
+    async* objectPages(Prefix) {
+      let asked: ListObjectsV2CommandInput | undefined = { Bucket, Prefix }
+      while (asked) {
+        const input: ListObjectsV2CommandInput = asked
+        const page = await mapping(() => client.send(new ListObjectsV2Command(input)))
+        yield (page.Contents ?? []).map(object => ({ key: object.Key ?? '', bytes: object.Size ?? 0, changedAtMs: object.LastModified?.getTime() ?? Infinity }))
+        asked = page.IsTruncated ? { Bucket, Prefix, ContinuationToken: page.NextContinuationToken } : undefined
+      }
+    },
+  } satisfies Partial<FilmStorage>
 }
 
 const MISSING = new Set(['NoSuchKey', 'NoSuchUpload', 'NotFound'])

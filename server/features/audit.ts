@@ -6,8 +6,9 @@ import { newId } from '#server/ids'
 export type Deed
   = 'signed-in' | 'signed-out' | 'account-made' | 'address-confirmed' | 'password-changed' | 'password-reset'
     | 'picture-changed' | 'picture-removed' | 'account-changed' | 'invited' | 'invitation-accepted'
-    | 'review-submitted' | 'review-taken-up' | 'review-put-back' | 'review-answered'
+    | 'review-submitted' | 'review-taken-up' | 'review-put-back' | 'review-answered' | 'review-withdrawn'
     | 'clip-started' | 'clip-accepted' | 'clip-refused' | 'clip-given-up'
+    | 'swings-told' | 'clip-abandoned' | 'clip-lost' | 'photo-added' | 'photo-removed' | 'photo-lost' | 'profile-changed'
 
 /** Written in the same transaction as the deed. */
 export async function recordDeed(db: Database, ctx: Ctx, deed: Deed, subjectId: string | null, actorId = ctx.viewer?.id ?? null): Promise<void> {

@@ -1,3 +1,4 @@
+import { createHash } from 'node:crypto'
 import type { H3Event } from 'h3'
 import { getRequestHeader, setResponseHeader, setResponseStatus } from 'h3'
 import type { RepeatableRequest } from '#server/write'
@@ -8,12 +9,16 @@ import { runningApp } from '#server/running'
 import { findViewer } from '#server/features/sessions/session.service'
 import { toHttpError } from './errors'
 import { readBodyText } from './input'
+import type { UploadLimits } from './read-upload'
+import { readUpload } from './read-upload'
 
 interface AnswerOptions {
   /** Of a success; 200 when not named. */
   status?: 201 | 202
   /** `again` for answers that also set a cookie: a repeated request is carried out anew, which must be harmless. */
   repeated?: 'stored' | 'again'
+  /** For a POST that brings files: how much of them is read. */
+  form?: UploadLimits
 }
 
 /**
@@ -23,7 +28,7 @@ interface AnswerOptions {
 export async function answer<T>(event: H3Event, work: () => Promise<T>, options: AnswerOptions = {}): Promise<T> {
   try {
     setResponseHeader(event, 'Cache-Control', 'no-store')
-    const repeatable = event.method === 'POST' ? await readRepeatable(event) : undefined
+    const repeatable = event.method === 'POST' ? await readRepeatable(event, options.form) : undefined
     const result = repeatable ? await answerOnce(event, repeatable, work, options.repeated ?? 'stored') : await work()
     if (options.status) setResponseStatus(event, options.status)
     return result
@@ -60,7 +65,7 @@ async function findStored<T>(request: RepeatableRequest): Promise<{ answer: T } 
   return { answer: JSON.parse(stored.answer) }
 }
 
-async function readRepeatable(event: H3Event): Promise<RepeatableRequest | undefined> {
+async function readRepeatable(event: H3Event, form: UploadLimits | undefined): Promise<RepeatableRequest | undefined> {
   const key = getRequestHeader(event, 'idempotency-key')
   if (key === undefined) return undefined
   if (!/^[\x21-\x7e]{8,128}$/.test(key)) {
@@ -68,11 +73,20 @@ async function readRepeatable(event: H3Event): Promise<RepeatableRequest | undef
   }
   const app = runningApp()
   const viewer = await findViewer(event, app, app.clock.nowMs())
+  // A stranger is turned away in any case: nobody's files are read for that.
+  if (form && !viewer) return undefined
   return {
     // Hashed: some addresses carry a link's secret.
     scope: `${viewer?.id ?? 'visitor'} ${keyedHash(app.settings.sessionPassword, event.path.split('?')[0] ?? '')}`,
     key,
     // The body may hold a password: nobody with the file alone may test guesses against it.
-    requestHash: keyedHash(app.settings.sessionPassword, await readBodyText(event)),
+    requestHash: keyedHash(app.settings.sessionPassword, form ? await describeForm(event, form) : await readBodyText(event)),
   }
+}
+
+/** What a form asks for, without its boundary, which a browser makes anew each time it sends the same form. */
+async function describeForm(event: H3Event, form: UploadLimits): Promise<string> {
+  const files = await readUpload(event, form)
+  const digests = files.map(({ field, bytes }) => `${field} ${createHash('sha256').update(bytes).digest('hex')}`)
+  return [event.path.split('?')[1] ?? '', ...digests].join('\n')
 }

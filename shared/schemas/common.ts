@@ -10,6 +10,9 @@ export const tokenSchema = z.string().regex(/^[A-Za-z0-9_-]{43}$/, 'This link is
 
 export const tokenParams = z.object({ token: tokenSchema })
 
+/** As `slugOf` makes them of a coach's name. */
+export const slugParams = z.object({ slug: z.string().regex(/^[a-z0-9-]{1,80}$/, 'This is not an address of a coach.') })
+
 export const pageQuery = z.object({
   cursor: z.string().max(200).optional(),
   limit: z.coerce.number().int().min(1).max(100).default(25),

@@ -44,6 +44,8 @@ export const submitSchema = z.object({
   /** Needed to pay by card; a credit knows what it was sold as. */
   offerId: idSchema.optional(),
   payBy: z.enum(['credit', 'card']).default('credit'),
+  /** The price that was shown, so that nobody pays another one unseen. */
+  priceMinor: z.number().int().min(0).optional(),
 })
 
 /** `GET /api/reviews`. */

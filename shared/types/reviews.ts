@@ -1,4 +1,6 @@
+import type { Contact, Flight, Surface } from '#shared/domain/review/ball-results'
 import type { Letter } from '#shared/domain/review/letter'
+import type { PhotoKind } from '#shared/domain/review/photo-kinds'
 import type { ReviewMove, ReviewState } from '#shared/domain/review/states'
 import type { DayLineSpan } from '#shared/domain/turnaround/day-line'
 import type { PersonBrief } from './people'
@@ -7,6 +9,32 @@ export type ClipView = 'face_on' | 'down_the_line'
 
 /** `uploading`: parts are arriving; `reading`: the server reads it; then one of the last two. */
 export type ClipState = 'uploading' | 'reading' | 'accepted' | 'refused'
+
+/** What the device did to a clip before sending it; `original` for nothing. */
+export type PreparedAs = 're_encoded' | 'cut' | 'remuxed' | 'original'
+
+/** One swing within a clip, with what the student says its ball did; null for what they do not know. */
+export interface SwingBrief {
+  id: string
+  /** From 1, in order of time. */
+  number: number
+  /** Milliseconds of the clip as it plays, half-open. */
+  fromMs: number
+  toMs: number
+  contact: Contact | null
+  flight: Flight | null
+  carryM: number | null
+  surface: Surface | null
+}
+
+/** A photograph beside the clips; `GET /api/photos/:id/picture` leads to it. */
+export interface PhotoBrief {
+  id: string
+  kind: PhotoKind
+  widthPx: number
+  heightPx: number
+  createdAtMs: number
+}
 
 export interface ClipBrief {
   id: string
@@ -19,7 +47,13 @@ export interface ClipBrief {
   widthPx: number | null
   heightPx: number | null
   durationMs: number | null
+  /** As the file plays. */
   framesPerSecond: number | null
+  /** Rate at which it was filmed, where that is another than the file plays at. */
+  captureFramesPerSecond: number | null
+  preparedAs: PreparedAs | null
+  /** At least one once the clip is accepted: the whole clip, until the student says more. */
+  swings: SwingBrief[]
   createdAtMs: number
 }
 
@@ -85,12 +119,19 @@ export interface ReviewView {
   /** Only for those who answer: what hurts or does not move. */
   limits: string | null
   clips: ClipBrief[]
+  photos: PhotoBrief[]
   turnaround: TurnaroundView | null
   letter: LetterView | null
   createdAtMs: number
   submittedAtMs: number | null
   /** Moves this reader may make now. */
   moves: ReviewMove[]
+}
+
+/** `POST /api/reviews/:id/submit`: by credit the review waits; by card `checkoutUrl` is the provider's page to go to. */
+export interface SubmitAnswer {
+  review: ReviewView
+  checkoutUrl: string | null
 }
 
 /** A row of `GET /api/reviews`. */

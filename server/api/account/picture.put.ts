@@ -1,6 +1,6 @@
 import type { Viewer } from '#shared/types/people'
 import { changePicture, takePictureAllowance } from '#server/features/people/picture.service'
-import { readUpload } from '#server/features/people/read-upload'
+import { readUpload } from '#server/utils/read-upload'
 import { answer } from '#server/utils/answer'
 import { signedIn } from '#server/utils/guards'
 

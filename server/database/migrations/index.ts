@@ -1,4 +1,6 @@
 import type { Migration } from 'kysely'
+import { money } from './007_money'
+import { film } from './006_film'
 import { offers } from './002_offers'
 import { people } from './001_people'
 import { reviews } from './003_reviews'
@@ -12,4 +14,6 @@ export const migrations: Record<string, Migration> = {
   '003_reviews': reviews,
   '004_turnaround': turnaround,
   '005_running': running,
+  '006_film': film,
+  '007_money': money,
 }

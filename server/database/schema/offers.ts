@@ -29,6 +29,8 @@ export interface CreditsTable {
   granted_at_ms: number
   spent_at_ms: number | null
   spent_review_id: string | null
+  order_id: string | null
+  value_minor: Generated<number>
 }
 
 export interface ProviderEventsTable {

@@ -61,6 +61,21 @@ export interface StudentsTable {
   birth_date: string
   handedness: 'right' | 'left'
   limits: Generated<string>
+  handicap: Generated<string>
+  goals: Generated<string>
+  /** A JSON list of keys. */
+  practice_places: Generated<string>
+  sessions_per_week: number | null
+  minutes_per_session: number | null
+}
+
+export interface ClubsTable {
+  student_id: string
+  position: number
+  club: string
+  length_m: number | null
+  lie_deg: number | null
+  carry_m: number | null
 }
 
 export interface CoachesTable {
@@ -68,6 +83,7 @@ export interface CoachesTable {
   slug: string
   about: Generated<string>
   is_open: Generated<0 | 1>
+  share_percent: Generated<number>
 }
 
 export interface GuardianshipsTable {
@@ -93,6 +109,7 @@ export interface PeopleArea {
   tokens: TokensTable
   invites: InvitesTable
   students: StudentsTable
+  clubs: ClubsTable
   coaches: CoachesTable
   guardianships: GuardianshipsTable
   consents: ConsentsTable

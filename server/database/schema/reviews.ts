@@ -1,4 +1,6 @@
 import type { Generated } from 'kysely'
+import type { Contact, FlightCurve, FlightHeight, FlightStart, Surface } from '#shared/domain/review/ball-results'
+import type { PhotoKind } from '#shared/domain/review/photo-kinds'
 
 /** Questions, their film and their answers. The migration of this area holds the checks and indexes. */
 
@@ -49,12 +51,43 @@ export interface ClipsTable {
   created_at_ms: number
   completed_at_ms: number | null
   read_at_ms: number | null
+  prepared_as: 're_encoded' | 'cut' | 'remuxed' | 'original' | null
+  /** While reading: when somebody else may take the reading over. */
+  read_due_at_ms: number | null
+  read_attempts: Generated<number>
 }
 
 export interface UploadsTable {
   clip_id: string
   store_upload_id: string
   part_bytes: number
+  created_at_ms: number
+  /** When the student asked to join the parts; null until then. */
+  completion_asked_at_ms: number | null
+}
+
+export interface SwingsTable {
+  id: string
+  clip_id: string
+  number: number
+  from_ms: number
+  to_ms: number
+  contact: Contact | null
+  flight_start: FlightStart | null
+  flight_curve: FlightCurve | null
+  flight_height: FlightHeight | null
+  carry_m: number | null
+  surface: Surface | null
+}
+
+export interface PhotosTable {
+  id: string
+  review_id: string
+  kind: PhotoKind
+  object_key: string
+  width_px: number
+  height_px: number
+  bytes: number
   created_at_ms: number
 }
 
@@ -93,6 +126,8 @@ export interface ReviewsArea {
   reviews: ReviewsTable
   clips: ClipsTable
   uploads: UploadsTable
+  swings: SwingsTable
+  photos: PhotosTable
   drafts: DraftsTable
   diagnoses: DiagnosesTable
   prescriptions: PrescriptionsTable

@@ -12,12 +12,20 @@ export function partsMissing(missingBytes: number): Refusal {
   return new Refusal('wrong-moment', 'parts-missing', `The clip is not whole yet: ${missingBytes} bytes are missing. Send the missing parts, then try again.`)
 }
 
+export function uploadGone(): Refusal {
+  return new Refusal('gone', 'upload-gone', 'What was sent of this clip is no longer there. Remove the clip and send it again.')
+}
+
 export function storeUnavailable(): Refusal {
   return new Refusal('unavailable', 'store-unavailable', 'The film store does not answer at the moment. What was sent is kept; try again in a minute.', undefined, 60)
 }
 
 export function clipDone(): Refusal {
   return new Refusal('wrong-moment', 'clip-done', 'This clip has arrived whole; it takes no more parts.')
+}
+
+export function clipNotRead(): Refusal {
+  return new Refusal('wrong-moment', 'clip-not-ready', 'This clip has not been read and accepted, so nothing is known of its swings yet.')
 }
 
 export function alreadySent(): Refusal {

@@ -2,13 +2,19 @@ import type { App } from '#server/app'
 import { jobContext } from '#server/context'
 import type { Ctx } from '#server/context'
 import { readWaitingClips } from '#server/features/film/film.jobs'
+import { sweepFilm } from '#server/features/film/sweep/sweep.service'
 import { sendDueLetters } from '#server/features/mail/outbox.service'
+import { giveMoneyBack } from '#server/features/money/refund.jobs'
+import { settleOpenOrders } from '#server/features/money/settle.service'
 import { tidyPeople } from '#server/features/people/people.jobs'
 
 /** Work that may run twice without harm, poked after a commit and by schedule. */
 const JOBS = {
   'mail:send': sendDueLetters,
   'film:read': readWaitingClips,
+  'film:sweep': sweepFilm,
+  'money:settle': settleOpenOrders,
+  'money:refund': giveMoneyBack,
   'people:tidy': tidyPeople,
 } as const satisfies Record<string, (ctx: Ctx) => Promise<void>>
 

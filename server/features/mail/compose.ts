@@ -3,6 +3,7 @@ import { findStudio } from '#server/features/people/studio.repository'
 import { findUser } from '#server/features/people/user.repository'
 import { addressAlreadyKnown, confirmAddress, forgottenPassword, invitation, passwordChanged } from './compose/account-letters'
 import type { Composer } from './compose/material'
+import { moneyBack, receipt } from './compose/money-letters'
 import { answered, reviewSent, reviewWaiting } from './compose/review-letters'
 import type { Letter, LetterName } from './letters'
 import { isLetterName } from './letters'
@@ -19,6 +20,8 @@ const COMPOSERS: Record<LetterName, Composer> = {
   'forgotten-password': forgottenPassword,
   'password-changed': passwordChanged,
   'invitation': invitation,
+  'money-back': moneyBack,
+  'receipt': receipt,
   'review-sent': reviewSent,
   'review-waiting': reviewWaiting,
   'answered': answered,

@@ -23,6 +23,17 @@ export async function findCoach(db: Database, id: string): Promise<CoachRow | un
   return coachRows(db).where('users.id', '=', id).executeTakeFirst()
 }
 
+/** The coach's part of what an answer earns, in whole per cent; 0 for people who are no coaches. */
+export async function findCoachShare(db: Database, id: string): Promise<number> {
+  const row = await db.selectFrom('coaches').select('share_percent').where('user_id', '=', id).executeTakeFirst()
+  return row?.share_percent ?? 0
+}
+
+/** As `findCoach`, by the name in their address. */
+export async function findCoachBySlug(db: Database, slug: string): Promise<CoachRow | undefined> {
+  return coachRows(db).where('coaches.slug', '=', slug).executeTakeFirst()
+}
+
 /** Everybody who answers reviews, by name. */
 export async function listCoaches(db: Database): Promise<CoachRow[]> {
   return coachRows(db).orderBy('users.name').orderBy('users.id').execute()

@@ -7,7 +7,7 @@ import { Refusal, invalidFields, notFound } from '#server/refusal'
 import { write } from '#server/write'
 import { makePicture } from './picture'
 import { findVisiblePictureKey } from './picture.repository'
-import type { Upload } from './read-upload'
+import type { Upload } from '#server/utils/read-upload'
 import { findUser, updateUser } from './user.repository'
 import { getViewer } from './viewer.service'
 

@@ -24,13 +24,22 @@ export async function findVisibleClip(db: Database, viewer: ViewerFacts, id: str
 
 export type ClipRecord = NonNullable<Awaited<ReturnType<typeof findVisibleClip>>>
 
-/** Clips that were sent whole but not read since `beforeMs`: a server ended in between. */
-export async function listUnreadClips(db: Database, beforeMs: number, limit: number): Promise<ClipRow[]> {
+/** Clips that were sent whole and are due to be read by whoever finds them: a server ended in between. */
+export async function listUnreadClips(db: Database, nowMs: number, limit: number): Promise<ClipRow[]> {
   return db.selectFrom('clips').selectAll()
-    .where('state', '=', 'reading').where('completed_at_ms', '<', beforeMs)
-    .orderBy('completed_at_ms')
+    .where('state', '=', 'reading').where('read_due_at_ms', '<=', nowMs)
+    .orderBy('read_due_at_ms')
     .limit(limit)
     .execute()
+}
+
+/** Takes a reading that is due, until `untilMs`. @returns whether nobody else took it since it was listed. */
+export async function takeReading(db: Database, clip: ClipRow, untilMs: number): Promise<boolean> {
+  const result = await db.updateTable('clips')
+    .set({ read_due_at_ms: untilMs, read_attempts: clip.read_attempts + 1 })
+    .where('id', '=', clip.id).where('state', '=', 'reading').where('read_attempts', '=', clip.read_attempts)
+    .executeTakeFirst()
+  return result.numUpdatedRows === 1n
 }
 
 export async function insertClip(db: Database, row: Insertable<ClipsTable>, upload: { storeUploadId: string, partBytes: number }): Promise<void> {
@@ -44,6 +53,24 @@ export async function insertClip(db: Database, row: Insertable<ClipsTable>, uplo
 export async function updateClip(db: Database, id: string, state: ClipsTable['state'], change: Updateable<ClipsTable>): Promise<boolean> {
   const result = await db.updateTable('clips').set(change).where('id', '=', id).where('state', '=', state).executeTakeFirst()
   return result.numUpdatedRows === 1n
+}
+
+/** Notes that all parts are there and are being joined, so that somebody else can finish it. */
+export async function markCompletionAsked(db: Database, clipId: string, atMs: number | null): Promise<void> {
+  await db.updateTable('uploads').set({ completion_asked_at_ms: atMs }).where('clip_id', '=', clipId).execute()
+}
+
+/** Clips whose joining was begun before `beforeMs` and not finished. */
+export async function listUnjoinedClips(db: Database, beforeMs: number, limit: number) {
+  return db.selectFrom('uploads')
+    .innerJoin('clips', 'clips.id', 'uploads.clip_id')
+    .selectAll('clips')
+    .select('uploads.store_upload_id')
+    .where('uploads.completion_asked_at_ms', '<=', beforeMs)
+    .where('clips.state', '=', 'uploading')
+    .orderBy('uploads.completion_asked_at_ms')
+    .limit(limit)
+    .execute()
 }
 
 export async function deleteUpload(db: Database, clipId: string): Promise<void> {

@@ -5,6 +5,7 @@ import type { SignedInCtx } from '#server/context'
 import { recordDeed } from '#server/features/audit'
 import { queueLetter } from '#server/features/mail/outbox.service'
 import { recipientsOf } from '#server/features/mail/recipients'
+import { earnReview } from '#server/features/money/earn'
 import { stopAnswerClock } from '#server/features/turnaround/turnaround.service'
 import { newId } from '#server/ids'
 import { invalidFields } from '#server/refusal'
@@ -76,6 +77,7 @@ export async function sendAnswer(ctx: SignedInCtx, input: { id: string, version:
     })
     await updateReview(db, input.id, 'in_hand', { state: 'answered', answered_at_ms: ctx.nowMs })
     await stopAnswerClock(db, ctx, input.id)
+    await earnReview(db, ctx, { reviewId: input.id, coachId: ctx.viewer.id })
     for (const { userId } of await recipientsOf(db, record.student_id)) {
       await queueLetter(db, ctx, { letter: 'answered', event: diagnosisId, subjectId: diagnosisId, to: { userId } })
     }

@@ -8,10 +8,6 @@ export function noCreditLeft(): Refusal {
   return new Refusal('wrong-moment', 'no-credit-left', 'You have no review left. Your studio can add one; what you wrote is kept.')
 }
 
-export function cardNotOpen(): Refusal {
-  return new Refusal('wrong-moment', 'card-not-open', 'This studio does not take cards here yet. Send this review with one that you hold.')
-}
-
 export function noClipYet(): Refusal {
   return new Refusal('wrong-moment', 'no-clip-yet', 'Add a clip first, from in front or from behind along the target line. One is enough to go on.')
 }

@@ -1,10 +1,14 @@
 import { ageInYears } from '#shared/domain/people/age'
 import type { ReviewFacts } from '#shared/domain/review/states'
 import { movesFrom } from '#shared/domain/review/states'
-import type { ClipBrief, LetterView, ReviewView, TurnaroundView } from '#shared/types/reviews'
+import type { ClipBrief, LetterView, ReviewView, SwingBrief, TurnaroundView } from '#shared/types/reviews'
 import type { SignedInCtx } from '#server/context'
 import type { Database } from '#server/database/client'
+import type { SwingRow } from '#server/features/film/swing.repository'
+import { listSwings, listSwingsOfReview } from '#server/features/film/swing.repository'
 import { getStudio } from '#server/features/people/studio.repository'
+import { listPhotos } from '#server/features/photos/photo.repository'
+import { viewPhoto } from '#server/features/photos/photo.view'
 import type { TurnaroundRow } from '#server/features/turnaround/turnaround.repository'
 import { findTurnaround } from '#server/features/turnaround/turnaround.repository'
 import { readTimeInHandMs } from '#server/features/turnaround/turnaround.service'
@@ -17,8 +21,10 @@ import type { ReviewRecord } from './review.repository'
 
 /** A review as one reader sees it. `record` must have been found for that reader. */
 export async function viewReview(db: Database, ctx: SignedInCtx, record: ReviewRecord): Promise<ReviewView> {
-  const [clips, turnaround, letter, studio] = [
+  const [clips, swings, photos, turnaround, letter, studio] = [
     await listClips(db, record.id),
+    await listSwingsOfReview(db, record.id),
+    await listPhotos(db, record.id),
     await findTurnaround(db, record.id, 'answer'),
     record.answered_at_ms === null ? undefined : await findLetter(db, record.id),
     await getStudio(db),
@@ -45,7 +51,8 @@ export async function viewReview(db: Database, ctx: SignedInCtx, record: ReviewR
     tried: record.tried,
     handedness: record.handedness,
     limits: mayReadLimits(ctx.viewer) ? record.limits : null,
-    clips: clips.map(viewClip),
+    clips: clips.map(clip => viewClip(clip, swings.filter(swing => swing.clip_id === clip.id))),
+    photos: photos.map(viewPhoto),
     turnaround: turnaround ? await viewTurnaround(db, turnaround, ctx.nowMs) : null,
     letter: letter ? viewLetter(letter) : null,
     createdAtMs: record.created_at_ms,
@@ -62,7 +69,12 @@ export function reviewFacts(record: ReviewRecord): ReviewFacts {
   }
 }
 
-export function viewClip(row: ClipRow): ClipBrief {
+/** A clip with the swings that are told of it now. */
+export async function viewClipWithSwings(db: Database, row: ClipRow): Promise<ClipBrief> {
+  return viewClip(row, await listSwings(db, row.id))
+}
+
+function viewClip(row: ClipRow, swings: SwingRow[]): ClipBrief {
   return {
     id: row.id,
     view: row.view,
@@ -74,7 +86,24 @@ export function viewClip(row: ClipRow): ClipBrief {
     heightPx: row.height_px,
     durationMs: row.duration_ms,
     framesPerSecond: row.frames_per_second,
+    captureFramesPerSecond: row.capture_frames_per_second,
+    preparedAs: row.prepared_as,
+    swings: swings.map(viewSwing),
     createdAtMs: row.created_at_ms,
+  }
+}
+
+function viewSwing(row: SwingRow): SwingBrief {
+  const { flight_start: start, flight_curve: curve, flight_height: height } = row
+  return {
+    id: row.id,
+    number: row.number,
+    fromMs: row.from_ms,
+    toMs: row.to_ms,
+    contact: row.contact,
+    flight: start === null || curve === null || height === null ? null : { start, curve, height },
+    carryM: row.carry_m,
+    surface: row.surface,
   }
 }
 

@@ -1,6 +1,7 @@
 import { timeInHandMs } from '#shared/domain/turnaround/between'
 import type { TurnaroundEvent } from '#shared/domain/turnaround/events'
 import { startTurnaround, stopTurnaround } from '#shared/domain/turnaround/moves'
+import type { Quote } from '#shared/domain/turnaround/promise'
 import { replayTurnaround } from '#shared/domain/turnaround/replay'
 import type { Ctx } from '#server/context'
 import type { Database } from '#server/database/client'
@@ -12,11 +13,12 @@ import { noPromisePossible } from './turnaround.errors'
 
 /** Starts the clock of an answer, by the hours of the chosen coach or of the studio. @returns the promise. */
 export async function beginAnswerClock(
-  db: Database, ctx: Ctx, input: { reviewId: string, chosenCoachId: string | null, turnaroundMs: number },
+  db: Database, ctx: Ctx, input: { reviewId: string, chosenCoachId: string | null, turnaroundMs: number, atMs?: number, quote?: Quote },
 ): Promise<number> {
   const { id: calendarId, calendar } = await getCalendarFor(db, input.chosenCoachId)
+  const { atMs = ctx.nowMs } = input
   const outcome = startTurnaround(
-    { atMs: ctx.nowMs, calendarVersionId: calendarId, turnaroundMs: input.turnaroundMs },
+    { atMs, calendarVersionId: calendarId, turnaroundMs: input.turnaroundMs, quote: input.quote },
     new Map([[calendarId, calendar]]),
   )
   if (!outcome.ok) throw noPromisePossible()
@@ -29,7 +31,7 @@ export async function beginAnswerClock(
     status: 'running',
     calendar_id: calendarId,
     turnaround_ms: input.turnaroundMs,
-    started_at_ms: ctx.nowMs,
+    started_at_ms: atMs,
     promised_at_ms: outcome.event.promisedAtMs,
     stopped_at_ms: null,
   })

@@ -51,7 +51,7 @@ export async function openHouse(reviewCount: number): Promise<House> {
     opened.push(() => standIns.close())
     const reviewIds = await makeStudio(environment, reviewCount)
     const yardstick = startChild('tests/bench/api/yardstick.ts', {
-      PORT: String(YARDSTICK_PORT), DATABASE_PATH: join(DATA_DIR, 'yardstick.sqlite'), ROWS: String(reviewCount),
+      PORT: String(YARDSTICK_PORT), SHOWN_PATH: environment.DATABASE_PATH ?? '', WRITTEN_PATH: join(DATA_DIR, 'yardstick.sqlite'),
     })
     opened.push(() => endChild(yardstick))
     await nextMessage(yardstick, 20_000)

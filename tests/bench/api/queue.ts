@@ -15,7 +15,7 @@ const WARM_UP_MS = 1500
 const OPEN_REVIEWS = 60
 const AIM = 0.5
 
-/** A coach's first page of the queue, against a bare handler that reads as many rows. */
+/** A coach's first page of the queue, against a bare handler that reads the same rows. */
 export async function measureQueue(load: Load, tell: (line: string) => void): Promise<BenchRow[]> {
   const house = await openHouse(OPEN_REVIEWS)
   try {

@@ -69,7 +69,9 @@ async function insertWaitingReview(db: Database, { as, ids }: Rehearsal, at: { i
     submitted_at_ms: at.atMs,
   })
   for (const view of ['face_on', 'down_the_line'] as const) await insertAcceptedClip(db, id, view, at.atMs)
-  await beginAnswerClock(db, as(key, at.atMs), { reviewId: id, chosenCoachId: null, turnaroundMs: TURNAROUND_MS })
+  await beginAnswerClock(db, as(key, at.atMs), {
+    reviewId: id, chosenCoachId: null, turnaroundMs: TURNAROUND_MS, atMs: at.atMs,
+  })
   await saveDraftOver(db, { reviewId: id, coachId: ids.coach, version: 0, letter: JSON.stringify(HEAVY_LETTER), nowMs: at.atMs })
   return id
 }

@@ -5,30 +5,27 @@ import { createApp, createRouter, defineEventHandler, readBody, toNodeListener }
 
 /**
  * What the API is measured against: h3 behind node's own server, as Nitro runs it, with the least that an answer of the same kind needs. No
- * sessions, no rules, no log. Its database has the pragmas of the product's own (server/database/client.ts).
+ * sessions, no rules, no query builder, no log. It reads the very rows that the queue shows, from the product's own file, and writes into a
+ * file of its own with the product's pragmas (server/database/client.ts).
  */
-const port = Number(process.env.PORT)
-const handle = new SQLite(process.env.DATABASE_PATH)
-for (const pragma of ['journal_mode = WAL', 'synchronous = FULL', 'foreign_keys = ON', 'secure_delete = ON']) handle.pragma(pragma)
-
-handle.exec(`
-  create table waiting (
-    id text primary key, student_name text not null, coach_name text, title text not null, club text not null, state text not null,
-    views text not null, started_at_ms integer not null, promised_at_ms integer not null
-  ) strict;
-  create index waiting_by_promise on waiting (promised_at_ms, id);
-  create table deeds (id text primary key, subject text not null, at_ms integer not null) strict;
+const shown = new SQLite(process.env.SHOWN_PATH, { readonly: true })
+const read = shown.prepare(`
+  select turnarounds.id, turnarounds.review_id, turnarounds.kind, turnarounds.started_at_ms, turnarounds.promised_at_ms,
+    reviews.state, reviews.title, reviews.club, reviews.coach_id, student.name as student_name, coach.name as coach_name,
+    (select group_concat(view) from clips where clips.review_id = reviews.id and clips.state = 'accepted') as views
+  from turnarounds
+  join reviews on reviews.id = turnarounds.review_id
+  join users as student on student.id = reviews.student_id
+  left join users as coach on coach.id = reviews.coach_id
+  where turnarounds.status <> 'stopped'
+  order by turnarounds.promised_at_ms, turnarounds.id
+  limit 25
 `)
-const insertWaiting = handle.prepare('insert into waiting values (?, ?, ?, ?, ?, ?, ?, ?, ?)')
-for (let index = 0; index < Number(process.env.ROWS); index += 1) {
-  const startedAtMs = 1_800_000_000_000 + index * 60_000
-  insertWaiting.run(
-    randomUUID(), 'Joel Osei', null, `Heavy, then thin, number ${index}`, '7-iron', 'waiting', 'face_on,down_the_line', startedAtMs, startedAtMs + 86_400_000,
-  )
-}
 
-const read = handle.prepare('select * from waiting order by promised_at_ms, id limit 25')
-const insertDeed = handle.prepare('insert into deeds values (?, ?, ?)')
+const written = new SQLite(process.env.WRITTEN_PATH)
+for (const pragma of ['journal_mode = WAL', 'synchronous = FULL', 'foreign_keys = ON', 'secure_delete = ON']) written.pragma(pragma)
+written.exec('create table deeds (id text primary key, subject text not null, at_ms integer not null) strict')
+const insertDeed = written.prepare('insert into deeds values (?, ?, ?)')
 
 const router = createRouter()
   .get('/rows', defineEventHandler(() => ({ items: read.all() })))
@@ -39,4 +36,4 @@ const router = createRouter()
     return { id }
   }))
 
-createServer(toNodeListener(createApp().use(router))).listen(port, '127.0.0.1', () => process.send?.('ready'))
+createServer(toNodeListener(createApp().use(router))).listen(Number(process.env.PORT), '127.0.0.1', () => process.send?.('ready'))

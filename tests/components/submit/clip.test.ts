@@ -41,7 +41,7 @@ describe('one clip of a review', () => {
   it('says what was taken', () => {
     const wrapper = show({ clip })
     expect(wrapper.text()).toContain('Taken. 3.1 s · 240 frames a second · 1080 × 1920')
-    expect(wrapper.find('video').attributes('src')).toBe('/api/clips/c1/film')
+    expect(wrapper.find('video').attributes('src')).toBe('/api/clips/c1/film#t=0.001')
     expect(wrapper.text()).not.toContain('impact may not be visible')
   })
 

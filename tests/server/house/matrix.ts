@@ -34,7 +34,7 @@ export interface Row {
   path: (it: Fixtures) => string
   body?: unknown
   /** A fresh address for a cell that will change something, so that no cell depends on another. */
-  fresh?: (it: Fixtures) => Promise<{ path: string, body?: unknown }>
+  fresh?: (it: Fixtures, who: Who) => Promise<{ path: string, body?: unknown }>
   expect: Partial<Record<Who, number>> & { others: number }
 }
 
@@ -88,6 +88,13 @@ export const MATRIX: Row[] = [
     method: 'POST', route: '/api/reviews/:id/submit', path: it => `/api/reviews/${it.draftId}/submit`, body: { payBy: 'credit' },
     // The student's own draft has a clip that is still being sent.
     expect: { ...SIGNED_IN_ONLY, student: 409, student2: 404, junior: 404, others: 403 },
+  },
+  { method: 'POST', route: '/api/reviews/:id/settle', path: it => `/api/reviews/${it.draftId}/settle`, body: {}, expect: { ...SIGNED_IN_ONLY, student: 200, coach: 403, coach2: 403, owner: 403, others: 404 } },
+  {
+    method: 'POST', route: '/api/reviews/:id/withdraw', path: it => `/api/reviews/${it.draftId}/withdraw`, body: {},
+    fresh: async ({ world }, who) => ({ path: `/api/reviews/${who === 'owner' ? (await submitted(world, 'student')).id : await startDraft(world, 'student')}/withdraw` }),
+    // The owner sees no drafts, but may end what was sent.
+    expect: { ...SIGNED_IN_ONLY, student: 200, owner: 200, coach: 403, coach2: 403, others: 404 },
   },
   {
     method: 'POST', route: '/api/reviews/:id/take-up', path: it => `/api/reviews/${it.draftId}/take-up`, body: {},

@@ -43,7 +43,7 @@ function cookieOf(who: Who): string | undefined {
 async function askAs(row: Row, who: Who) {
   const expected = row.expect[who] ?? row.expect.others
   const isAllowed = expected < 300
-  const fresh = isAllowed && row.fresh ? await row.fresh(fixtures) : { path: row.path(fixtures), body: row.body }
+  const fresh = isAllowed && row.fresh ? await row.fresh(fixtures, who) : { path: row.path(fixtures), body: row.body }
   const answer = await call(world, row.method, fresh.path, { cookie: cookieOf(who), body: fresh.body ?? row.body })
   return { expected, answer }
 }

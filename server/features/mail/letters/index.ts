@@ -9,8 +9,12 @@ import type { ForgottenPasswordData } from './forgotten-password'
 import { forgottenPasswordLetter } from './forgotten-password'
 import type { InvitationData } from './invitation'
 import { invitationLetter } from './invitation'
+import type { MoneyBackData } from './money-back'
+import { moneyBackLetter } from './money-back'
 import type { PasswordChangedData } from './password-changed'
 import { passwordChangedLetter } from './password-changed'
+import type { ReceiptData } from './receipt'
+import { receiptLetter } from './receipt'
 import type { ReviewSentData } from './review-sent'
 import { reviewSentLetter } from './review-sent'
 import type { ReviewWaitingData } from './review-waiting'
@@ -25,6 +29,8 @@ interface DataByName {
   'forgotten-password': ForgottenPasswordData
   'password-changed': PasswordChangedData
   'invitation': InvitationData
+  'money-back': MoneyBackData
+  'receipt': ReceiptData
   'review-sent': ReviewSentData
   'review-waiting': ReviewWaitingData
   'answered': AnsweredData
@@ -40,6 +46,8 @@ const letters: { [N in LetterName]: (data: DataByName[N]) => Letter } = {
   'forgotten-password': forgottenPasswordLetter,
   'password-changed': passwordChangedLetter,
   'invitation': invitationLetter,
+  'money-back': moneyBackLetter,
+  'receipt': receiptLetter,
   'review-sent': reviewSentLetter,
   'review-waiting': reviewWaitingLetter,
   'answered': answeredLetter,

@@ -29,7 +29,7 @@ export function adviseOnFilm(film: AdvisedFilm, context: FilmContext): Advice[] 
   const found = [
     factor === undefined ? undefined : adviseOnHeadTravel(film.framesPerSecond / factor, context),
     factor === undefined ? undefined : adviseOnDuration(film.durationMs / 1000 * factor),
-    adviseOnSlowMotion(film, context, finding),
+    adviseOnSlowMotion(film, finding),
     ...adviseOnPicture(film),
     adviseOnLight(film, context),
     adviseOnMirror(film, context),

@@ -1,8 +1,8 @@
 import type { AdvisedFilm, Advice, FilmContext } from './context'
 import { VIEW_CLIP_WORDS } from './context'
 import { distanceWords, orWords, rateWords } from './number-words'
-import type { SlowMotion } from './slow-motion'
-import { DOWNSWING_S } from './slow-motion'
+import type { SlowMotion, SlowMotionQuestion } from './slow-motion'
+import { DOWNSWING_S, isBelievableRate } from './slow-motion'
 import { estimateHeadSpeed } from './speed'
 import { headTravelPerFrameM } from './travel'
 
@@ -28,10 +28,10 @@ const SHORTEST_SWING_S = 1.5
  * How far the club head moves between frames, and what that shows.
  *
  * @param framesPerSecond of real time
- * @returns undefined for a rate that is not positive
+ * @returns undefined for a rate that no film has
  */
 export function adviseOnHeadTravel(framesPerSecond: number, context: FilmContext): Advice | undefined {
-  if (!(framesPerSecond > 0) || !Number.isFinite(framesPerSecond))
+  if (!isBelievableRate(framesPerSecond))
     return undefined
   const speed = estimateHeadSpeed(context.club, context.usualCarryM)
   const travelM = speed && headTravelPerFrameM(speed.speedMps, framesPerSecond)
@@ -55,14 +55,14 @@ export function adviseOnHeadTravel(framesPerSecond: number, context: FilmContext
 }
 
 /** What is known of slow motion; nothing to say of a film that plays in real time. */
-export function adviseOnSlowMotion(film: AdvisedFilm, context: FilmContext, finding: SlowMotion): Advice | undefined {
+export function adviseOnSlowMotion(film: AdvisedFilm, finding: SlowMotion): Advice | undefined {
   if (finding.kind === 'real-time')
     return undefined
   if (finding.kind === 'slowed-by-known-factor') {
     const filmed = film.framesPerSecond / finding.realTimeFactor
     return { key: 'slow-motion', tone: 'good', words: `Slow motion, filmed at ${rateWords(filmed)} frames a second: times are counted in real seconds.` }
   }
-  return { key: 'slow-motion', tone: 'ask', ...askWords(film, context, finding) }
+  return { key: 'slow-motion', tone: 'ask', ...askWords(film.framesPerSecond, finding) }
 }
 
 /** A swing needs its address and its finish. */
@@ -77,27 +77,28 @@ export function adviseOnDuration(realDurationS: number): Advice | undefined {
   }
 }
 
-function askWords(film: AdvisedFilm, context: FilmContext, finding: Extract<SlowMotion, { kind: 'ask' }>): Pick<Advice, 'words' | 'whatToDo'> {
-  const fitting = finding.fittingFramesPerSecond
-  const say = `Say at how many frames a second it was filmed${fitting.length > 0 ? `; ${orWords(fitting)} would fit` : ''}.`
-  const named = context.saidFramesPerSecond ?? film.captureFramesPerSecond ?? 0
+function askWords(playing: number, finding: SlowMotionQuestion): Pick<Advice, 'words' | 'whatToDo'> {
+  const filmed = rateWords(finding.filmedFramesPerSecond ?? playing)
   switch (finding.reason) {
     case 'no-rate-in-file':
       return { words: 'The file does not say whether this is slow motion.', whatToDo: 'If it is, say at how many frames a second it was filmed. If it plays at normal speed, say that.' }
     case 'rate-unclear':
-      return { words: `The file names ${rateWords(named)} frames a second and plays at ${rateWords(film.framesPerSecond)}; that may or may not be slow motion.`, whatToDo: 'Say whether it plays slowed down or at normal speed.' }
+      return { words: `The file names ${filmed} frames a second and plays at ${rateWords(playing)}; that may or may not be slow motion.`, whatToDo: 'Say whether it plays slowed down or at normal speed.' }
     case 'faster-than-filmed':
-      return { words: `The film plays at ${rateWords(film.framesPerSecond)} frames a second but was filmed at ${rateWords(named)}, as time-lapse is.`, whatToDo: 'If it plays at normal speed, say that. Otherwise film again without time-lapse.' }
+      return { words: `The film plays at ${rateWords(playing)} frames a second but was filmed at ${filmed}, as time-lapse is.`, whatToDo: 'If it plays at normal speed, say that. Otherwise film again without time-lapse.' }
     case 'downswing-does-not-fit':
-      return { words: downswingWords(context, named, film.framesPerSecond), whatToDo: say }
+      return downswingWords(finding)
   }
 }
 
-function downswingWords(context: FilmContext, named: number, playing: number): string {
-  const factor = named > 0 ? playing / named : 1
-  const lasts = ((context.downswingFileS ?? 0) * factor).toFixed(2)
+function downswingWords(finding: SlowMotionQuestion): Pick<Advice, 'words' | 'whatToDo'> {
+  const { filmedFramesPerSecond, fittingFramesPerSecond: fitting } = finding
+  const lasts = `${(finding.downswingS ?? 0).toFixed(2)} seconds`
   const range = `a full one takes ${DOWNSWING_S.min} to ${DOWNSWING_S.max}`
-  return named > 0
-    ? `At ${rateWords(named)} frames a second the downswing would last ${lasts} seconds; ${range}.`
-    : `The downswing lasts ${lasts} seconds in this film; ${range}.`
+  return {
+    words: filmedFramesPerSecond === undefined
+      ? `The downswing lasts ${lasts} in this film; ${range}.`
+      : `Filmed at ${rateWords(filmedFramesPerSecond)} frames a second, the downswing would last ${lasts}; ${range}.`,
+    whatToDo: `Say at how many frames a second it was filmed${fitting.length > 0 ? `; ${orWords(fitting)} would fit` : ''}.`,
+  }
 }

@@ -33,8 +33,8 @@ const HANDS_ASIDE_M = 0.45
 
 /** Orientation and size: one line when all is well, one for each thing that is not. */
 export function adviseOnPicture(film: AdvisedFilm): Advice[] {
-  const { widthPx, heightPx } = film
-  if (!(widthPx > 0) || !(heightPx > 0))
+  const [widthPx, heightPx] = [Math.round(film.widthPx), Math.round(film.heightPx)]
+  if (!(widthPx > 0) || !(heightPx > 0) || !Number.isFinite(widthPx * heightPx))
     return []
   const advice: Advice[] = []
   if (film.isUpright === false)

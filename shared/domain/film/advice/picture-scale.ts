@@ -28,13 +28,12 @@ export interface ScaleSigns {
  * What one pixel covers at the depth of a known length that lies square to the camera.
  *
  * @param lengthM above 0
- * @param spanPx above 0
- * @returns millimetres; undefined when either is no positive number
+ * @param spanPx 1 or more: within one pixel nothing can be told apart
+ * @returns millimetres; undefined for anything else
  */
 export function millimetresPerPixel(lengthM: number, spanPx: number): number | undefined {
-  if (!(lengthM > 0) || !(spanPx > 0) || !Number.isFinite(lengthM) || !Number.isFinite(spanPx))
-    return undefined
-  return lengthM * 1000 / spanPx
+  const millimetres = lengthM * 1000 / spanPx
+  return lengthM > 0 && spanPx >= 1 && Number.isFinite(millimetres) && millimetres > 0 ? millimetres : undefined
 }
 
 /**

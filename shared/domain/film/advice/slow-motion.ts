@@ -1,3 +1,5 @@
+import { FILM_MAX_DURATION_MS, FILM_MAX_FRAMES_PER_SECOND } from '../limits'
+
 /**
  * Time from top to impact of a full swing in real seconds: wider than the 0.23 to 0.33 s of Grober & Cholewicki,
  * arXiv physics/0611291 (2006), so that slow and quick golfers pass.
@@ -41,8 +43,18 @@ export type SlowMotion
   = | { kind: 'real-time', realTimeFactor: 1 }
     /** Real time = file time × factor; below 1. */
     | { kind: 'slowed-by-known-factor', realTimeFactor: number }
-    /** Rates a phone films at that would make the downswing fit, lowest first. */
-    | { kind: 'ask', reason: SlowMotionReason, fittingFramesPerSecond: number[] }
+    | SlowMotionQuestion
+
+export interface SlowMotionQuestion {
+  kind: 'ask'
+  reason: SlowMotionReason
+  /** What the student or the file said it was filmed at, when either did. */
+  filmedFramesPerSecond: number | undefined
+  /** The downswing in real seconds if that were so, or as the file plays when neither did; undefined when not measured. */
+  downswingS: number | undefined
+  /** Rates a phone films at that would make the downswing fit, lowest first. */
+  fittingFramesPerSecond: number[]
+}
 
 /**
  * Whether a film plays in real time, and if not, by how much it is slowed.
@@ -51,33 +63,39 @@ export type SlowMotion
  * Others keep true times, or lose the rate when a film is shared: then a downswing of 0.2 to 0.4 s (give or take a frame)
  * settles it, or the student is asked. Nothing is guessed.
  *
- * @param signs a rate that is not positive counts as unknown
+ * @param signs a rate outside 1 to 1000 a second and a downswing longer than a film count as unknown
  */
 export function findSlowMotion(signs: SlowMotionSigns): SlowMotion {
-  const playing = positive(signs.framesPerSecond)
-  const said = positive(signs.saidFramesPerSecond)
-  const filmed = said ?? positive(signs.captureFramesPerSecond)
+  const playing = believed(signs.framesPerSecond)
+  const said = believed(signs.saidFramesPerSecond)
+  const filmed = said ?? believed(signs.captureFramesPerSecond)
+  const downswingFileS = believedDownswing(signs.downswingFileS)
   if (playing === undefined)
-    return { kind: 'ask', reason: 'no-rate-in-file', fittingFramesPerSecond: [] }
-  const ask = (reason: SlowMotionReason): SlowMotion => ({ kind: 'ask', reason, fittingFramesPerSecond: fittingRates(playing, signs.downswingFileS) })
-  if (filmed === undefined)
-    return withoutRate(playing, signs.downswingFileS, ask)
-  const factor = playing / filmed
+    return { kind: 'ask', reason: 'no-rate-in-file', filmedFramesPerSecond: filmed, downswingS: undefined, fittingFramesPerSecond: [] }
+  const factor = filmed === undefined ? 1 : playing / filmed
+  const ask = (reason: SlowMotionReason): SlowMotionQuestion => ({
+    kind: 'ask',
+    reason,
+    filmedFramesPerSecond: filmed,
+    downswingS: downswingFileS === undefined ? undefined : downswingFileS * factor,
+    fittingFramesPerSecond: fittingRates(playing, downswingFileS),
+  })
   if (factor > 1 + SAME_RATE_SHARE)
     return ask('faster-than-filmed')
   const finding: SlowMotion = factor >= 1 - SAME_RATE_SHARE
     ? { kind: 'real-time', realTimeFactor: 1 }
     : { kind: 'slowed-by-known-factor', realTimeFactor: factor }
-  if (signs.downswingFileS !== undefined)
-    return fits(signs.downswingFileS, finding.realTimeFactor, playing) ? finding : ask('downswing-does-not-fit')
+  if (downswingFileS !== undefined)
+    return fits(downswingFileS, finding.realTimeFactor, playing) ? finding : ask('downswing-does-not-fit')
+  if (filmed === undefined)
+    return playing >= PLAYS_REAL_FROM_FRAMES_PER_SECOND ? finding : ask('no-rate-in-file')
   const isUnclear = said === undefined && finding.kind === 'slowed-by-known-factor' && 1 / factor <= STRETCHED_FROM_RATIO * (1 + SAME_RATE_SHARE)
   return isUnclear ? ask('rate-unclear') : finding
 }
 
-function withoutRate(playing: number, downswingFileS: number | undefined, ask: (reason: SlowMotionReason) => SlowMotion): SlowMotion {
-  if (downswingFileS !== undefined)
-    return fits(downswingFileS, 1, playing) ? { kind: 'real-time', realTimeFactor: 1 } : ask('downswing-does-not-fit')
-  return playing >= PLAYS_REAL_FROM_FRAMES_PER_SECOND ? { kind: 'real-time', realTimeFactor: 1 } : ask('no-rate-in-file')
+/** Whether a film can have this many frames a second: 1 to 1000. */
+export function isBelievableRate(framesPerSecond: number): boolean {
+  return framesPerSecond >= 1 && framesPerSecond <= FILM_MAX_FRAMES_PER_SECOND
 }
 
 /** Top and impact are each told to half a frame, so their distance to one. */
@@ -93,6 +111,10 @@ function fittingRates(playing: number, downswingFileS: number | undefined): numb
   return PHONE_RATES.filter(rate => rate > playing * (1 + SAME_RATE_SHARE) && fits(downswingFileS, playing / rate, playing))
 }
 
-function positive(rate: number | undefined): number | undefined {
-  return rate !== undefined && Number.isFinite(rate) && rate > 0 ? rate : undefined
+function believed(framesPerSecond: number | undefined): number | undefined {
+  return framesPerSecond !== undefined && isBelievableRate(framesPerSecond) ? framesPerSecond : undefined
+}
+
+function believedDownswing(downswingFileS: number | undefined): number | undefined {
+  return downswingFileS !== undefined && downswingFileS > 0 && downswingFileS * 1000 <= FILM_MAX_DURATION_MS ? downswingFileS : undefined
 }

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { findReturnPath, firstScreen } from '~/utils/first-screen'
 import { readToken } from '~/utils/link-token'
-import { formatMoney } from '~/utils/money'
+import { formatMoney } from '#shared/utils/money'
 import { firstName, initials } from '~/utils/names'
 import { peopleHeading } from '~/utils/people-heading'
 

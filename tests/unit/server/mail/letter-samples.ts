@@ -37,6 +37,23 @@ export const letterSamples: { [N in LetterName]: LetterData<N> } = {
     inviteUrl: link(`/invite?token=${token}`),
     validUntilText: 'Tue 26 May, 09:00',
   },
+  'money-back': {
+    studioName,
+    readerName: 'Joel Okafor',
+    amountText: '£45',
+    reason: 'paid-twice',
+    orderId: '0196f0a2-7c11-7b52-9d0e-3f4f5b8a1c22',
+    reviewsUrl: link('/reviews'),
+  },
+  'receipt': {
+    studioName,
+    readerName: 'Joel Okafor',
+    offerName: 'Five reviews',
+    amountText: '£195',
+    paidText: 'Thu 21 May, 17:00',
+    orderId: '0196f0a2-7c11-7b52-9d0e-3f4f5b8a1c22',
+    reviewsUrl: link('/reviews'),
+  },
   'review-sent': {
     studioName,
     readerName: 'Joel Okafor',

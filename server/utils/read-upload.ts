@@ -11,14 +11,26 @@ export interface Upload {
   bytes: Buffer
 }
 
+export interface UploadLimits {
+  /** For all files together. */
+  maxBytes: number
+  maxFiles: number
+}
+
 /** Boundaries and part headers, beside the files themselves. */
 const FRAME_BYTES = 64 * 1024
 
 /**
- * The files of a small multipart form, held in memory: nothing is left behind, whatever goes wrong. `maxBytes` is for all files together.
+ * The files of a small multipart form, held in memory: nothing is left behind, whatever goes wrong. Read once and kept with the
+ * request, since the idempotency key covers them too.
  * @throws Refusal `too-large` (413), also for too many files; `not-a-form` (400) for what is cut short or no multipart form.
  */
-export async function readUpload(event: H3Event, { maxBytes, maxFiles }: { maxBytes: number, maxFiles: number }): Promise<Upload[]> {
+export async function readUpload(event: H3Event, limits: UploadLimits): Promise<Upload[]> {
+  event.context.uploads ??= collectFiles(event, limits)
+  return event.context.uploads
+}
+
+async function collectFiles(event: H3Event, { maxBytes, maxFiles }: UploadLimits): Promise<Upload[]> {
   if (!/^multipart\/form-data\s*;/i.test(getRequestHeader(event, 'content-type') ?? '')) throw notAForm()
   // Said before reading where the length is known: nobody should send all of it to hear that it is too much.
   if (Number(getRequestHeader(event, 'content-length') ?? 0) > maxBytes + FRAME_BYTES) throw tooLarge(maxBytes)

@@ -5,7 +5,7 @@ import { tmpdir } from 'node:os'
 import { readdir } from 'node:fs/promises'
 import { createApp, defineEventHandler, setResponseStatus, toNodeListener } from 'h3'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { readUpload } from '#server/features/people/read-upload'
+import { readUpload } from '#server/utils/read-upload'
 import { Refusal } from '#server/refusal'
 
 const MAX_BYTES = 100_000
