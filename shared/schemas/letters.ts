@@ -3,7 +3,7 @@ import { HOW_SURE, LETTER_MAX_LENGTHS } from '#shared/domain/review/letter'
 import { text } from './common'
 import { TITLE_MAX_LENGTH } from './reviews'
 
-/** A letter in progress: any part may be empty; `letterProblems` says what keeps it from being sent. */
+/** A letter in progress, every part of which may be empty; `letterProblems` says what keeps it from being sent. */
 export const letterDraftSchema = z.object({
   title: text(TITLE_MAX_LENGTH),
   leaveAlone: text(LETTER_MAX_LENGTHS.leaveAlone),

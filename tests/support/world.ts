@@ -28,7 +28,7 @@ export interface World {
 }
 
 export interface WorldOptions {
-  /** Two worlds at once need two numbers, 0 to 40. */
+  /** Two worlds at once need two numbers, 0 to 49. */
   index: number
   environment?: Record<string, string>
 }

@@ -8,7 +8,8 @@ export interface MotionSample {
 }
 
 export interface MotionOptions {
-  /** End of the clip, in seconds as it plays. */
+  /** Of the clip, in seconds as it plays. */
+  startS: number
   endS: number
   /** How many times slower than life the clip plays; at least 1. */
   slowedBy?: number
@@ -32,6 +33,9 @@ const TIMES_QUIET_MIN = 2.5
 /** A burst lasts while motion is over half of the largest; it is a swing when it reaches this share of it. */
 const BURST_SHARE = 0.5
 const SWING_SHARE = 0.7
+/** Long motion is taken out down to this share of it: its rise and its end would look like bursts of their own. */
+const FOOT_SHARE = 0.1
+const SAME_FOOT_S = 0.1
 
 interface Burst {
   fromS: number
@@ -42,6 +46,7 @@ interface Burst {
 }
 
 interface Levels {
+  foot: number
   burst: number
   swing: number
 }
@@ -56,8 +61,7 @@ interface Levels {
  * @param samples in order of time, at least ten a real second for this to mean anything
  * @returns in order of time, clamped to the clip, those that overlap as one; at most six, the strongest first chosen; empty when nothing stands out
  */
-export function findSwingSpans(samples: readonly MotionSample[], { endS, slowedBy = 1, maxSwings = SWINGS_MAX }: MotionOptions): SpanS[] {
-  const startS = samples[0]?.timeS ?? 0
+export function findSwingSpans(samples: readonly MotionSample[], { startS, endS, slowedBy = 1, maxSwings = SWINGS_MAX }: MotionOptions): SpanS[] {
   const strongest = findBursts(samples, slowedBy).sort((a, b) => b.amount - a.amount).slice(0, maxSwings)
   return strongest
     .map(({ peakS }): SpanS => [Math.max(startS, peakS - BEFORE_PEAK_S * slowedBy), Math.min(endS, peakS + AFTER_PEAK_S * slowedBy)])
@@ -77,7 +81,8 @@ function findBursts(samples: readonly MotionSample[], slowedBy: number): Burst[]
     const bursts = burstsAbove(rest, levels.burst, SAME_BURST_S * slowedBy)
     const long = bursts.filter(({ fromS, toS }) => toS - fromS > BURST_MAX_S * slowedBy)
     if (long.length === 0) return bursts.filter(({ amount }) => amount >= levels.swing)
-    rest = rest.filter(({ timeS }) => !long.some(({ fromS, toS }) => timeS >= fromS && timeS <= toS))
+    const feet = burstsAbove(rest, levels.foot, SAME_FOOT_S * slowedBy).filter(foot => long.some(({ peakS }) => peakS >= foot.fromS && peakS <= foot.toS))
+    rest = rest.filter(({ timeS }) => ![...long, ...feet].some(({ fromS, toS }) => timeS >= fromS && timeS <= toS))
   }
 }
 
@@ -95,7 +100,7 @@ function findLevels(samples: readonly MotionSample[]): Levels | undefined {
   const quiet = sorted[Math.floor(sorted.length * QUIET_SHARE)] ?? 0
   const over = (sorted.at(-1) ?? 0) - quiet
   if (over < OVER_QUIET_MIN || over + quiet < quiet * TIMES_QUIET_MIN) return undefined
-  return { burst: quiet + BURST_SHARE * over, swing: quiet + SWING_SHARE * over }
+  return { foot: quiet + FOOT_SHARE * over, burst: quiet + BURST_SHARE * over, swing: quiet + SWING_SHARE * over }
 }
 
 function burstsAbove(samples: readonly MotionSample[], level: number, sameS: number): Burst[] {

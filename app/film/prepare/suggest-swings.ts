@@ -15,8 +15,8 @@ import { slowedByOf } from './slow-motion'
 export async function suggestSwings({ file, facts }: Pick<OpenedClip, 'file' | 'facts'>, { onProgress, signal, slowedBy = slowedByOf(facts) }: Waiting & { slowedBy?: number } = {}): Promise<SpanS[]> {
   try {
     const word = await askWorker({ kind: 'measure-motion', file }, { onProgress, signal })
-    const endS = (facts.frameTimesS[0] ?? 0) + facts.durationMs / 1000
-    return word.kind === 'motion' ? findSwingSpans(word.samples, { endS, slowedBy }) : []
+    const startS = facts.frameTimesS[0] ?? 0
+    return word.kind === 'motion' ? findSwingSpans(word.samples, { startS, endS: startS + facts.durationMs / 1000, slowedBy }) : []
   }
   catch (error) {
     if (error instanceof WorkerFailed) return []

@@ -1,4 +1,5 @@
 import type { Insertable, Selectable } from 'kysely'
+import type { Letter } from '#shared/domain/review/letter'
 import type { Database } from '#server/database/client'
 import type { DiagnosesTable, DraftsTable, PrescriptionsTable } from '#server/database/schema/reviews'
 
@@ -39,6 +40,25 @@ export async function findLetter(db: Database, reviewId: string) {
     .limit(1)
     .executeTakeFirst()
 }
+
+/** The letter as it is written in, from the columns that diagnosis and prescription keep it in. */
+export function toLetter(row: LetterColumns): Letter {
+  return {
+    leaveAlone: row.leave_alone,
+    saw: row.saw,
+    why: row.why,
+    howSure: row.how_sure,
+    oneChange: row.one_change,
+    drillTitle: row.drill_title,
+    drillSteps: row.drill_steps,
+    drillDose: row.drill_dose,
+    caution: row.caution,
+  }
+}
+
+type LetterColumns
+  = Pick<Selectable<DiagnosesTable>, 'leave_alone' | 'saw' | 'why' | 'how_sure' | 'one_change' | 'caution'>
+    & Pick<Selectable<PrescriptionsTable>, 'drill_title' | 'drill_steps' | 'drill_dose'>
 
 export type LetterRecord = NonNullable<Awaited<ReturnType<typeof findLetter>>>
 

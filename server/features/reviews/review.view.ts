@@ -15,7 +15,7 @@ import { readTimeInHandMs } from '#server/features/turnaround/turnaround.service
 import type { ClipRow } from './clip.repository'
 import { listClips } from './clip.repository'
 import type { LetterRecord } from './letter.repository'
-import { findLetter } from './letter.repository'
+import { findLetter, toLetter } from './letter.repository'
 import { mayReadLimits, rolesFor } from './review.policy'
 import type { ReviewRecord } from './review.repository'
 
@@ -122,15 +122,7 @@ async function viewTurnaround(db: Database, row: TurnaroundRow, nowMs: number): 
 function viewLetter(row: LetterRecord): LetterView {
   return {
     title: row.title,
-    leaveAlone: row.leave_alone,
-    saw: row.saw,
-    why: row.why,
-    howSure: row.how_sure,
-    oneChange: row.one_change,
-    drillTitle: row.drill_title,
-    drillSteps: row.drill_steps,
-    drillDose: row.drill_dose,
-    caution: row.caution,
+    ...toLetter(row),
     answeredAtMs: row.answered_at_ms,
     coach: { id: row.coach_id, name: row.coach_name, hasPicture: row.coach_picture_key !== null },
   }

@@ -1,10 +1,10 @@
 import { firstLines } from '#shared/domain/review/first-lines'
+import { toLetter } from '#server/features/reviews/letter.repository'
 import { writeLetter } from '../letters'
 import { recipientsOf } from '../recipients'
 import type { Composer } from './material'
 import { pageUrl } from './material'
 import { formatMoment } from '#shared/utils/times'
-import type { AnswerSubject } from './review-subject.repository'
 import { findAnswerSubject, findWaitingSubject } from './review-subject.repository'
 
 /** Enough to know whether to read it now, little enough to read on a lock screen. */
@@ -59,18 +59,4 @@ export const answered: Composer = async ({ ctx, row, studio, reader }) => {
     reviewUrl: pageUrl(ctx, `/reviews/${answer.review_id}`),
     isGuardianCopy: recipient.isGuardian,
   })
-}
-
-function toLetter(row: AnswerSubject) {
-  return {
-    leaveAlone: row.leave_alone,
-    saw: row.saw,
-    why: row.why,
-    howSure: row.how_sure,
-    oneChange: row.one_change,
-    drillTitle: row.drill_title,
-    drillSteps: row.drill_steps,
-    drillDose: row.drill_dose,
-    caution: row.caution,
-  }
 }

@@ -32,5 +32,3 @@ export async function findAnswerSubject(db: Database, diagnosisId: string) {
     .where('diagnoses.id', '=', diagnosisId)
     .executeTakeFirst()
 }
-
-export type AnswerSubject = NonNullable<Awaited<ReturnType<typeof findAnswerSubject>>>

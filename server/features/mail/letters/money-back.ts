@@ -11,20 +11,20 @@ export interface MoneyBackData {
   reviewsUrl: string
 }
 
-const REASONS: Readonly<Record<MoneyBackData['reason'], string>> = {
-  'paid-twice': 'The same review was paid for twice, so one payment goes back.',
-  'withdrawn': 'You took the review back.',
-  'nothing-to-pay-for': 'The review that this was for is no longer there.',
+function reasonWords(reason: MoneyBackData['reason']): string {
+  if (reason === 'paid-twice') return 'The same review was paid for twice, so one payment goes back.'
+  if (reason === 'withdrawn') return 'You took the review back.'
+  return 'The review that this was for is no longer there.'
 }
 
 /** To whoever paid, when the provider has taken the refund. */
 export function moneyBackLetter(data: MoneyBackData): Letter {
   return layOut({
     subject: `${data.amountText} goes back to your card`,
-    preheader: REASONS[data.reason],
+    preheader: reasonWords(data.reason),
     heading: `${data.amountText} goes back to your card`,
     blocks: [
-      { kind: 'paragraph', text: `${firstNameOf(data.readerName)}, ${data.amountText} is on its way back to the card that you paid with. ${REASONS[data.reason]} Banks take up to ten days to show it.` },
+      { kind: 'paragraph', text: `${firstNameOf(data.readerName)}, ${data.amountText} is on its way back to the card that you paid with. ${reasonWords(data.reason)} Banks take up to ten days to show it.` },
       { kind: 'facts', rows: [{ name: 'Order', value: data.orderId }] },
       { kind: 'button', label: 'Your reviews', url: data.reviewsUrl },
     ],

@@ -27,7 +27,7 @@ export function receiptLetter(data: ReceiptData): Letter {
         rows: [
           { name: 'For', value: data.offerName },
           { name: 'Amount', value: data.amountText },
-          { name: 'Paid', value: data.paidText },
+          { name: 'Paid on', value: data.paidText },
           { name: 'Order', value: data.orderId },
         ],
       },
