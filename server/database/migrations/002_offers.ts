@@ -35,7 +35,7 @@ export const offers: Migration = {
       spent_review_id text unique,
       check ((spent_at_ms is null) = (spent_review_id is null))
     ) strict;
-    create index credits_left on credits (student_id, granted_at_ms) where spent_at_ms is null;
+    create index credits_left on credits (student_id, granted_at_ms, id) where spent_at_ms is null;
 
     create table provider_events (
       id text primary key,

@@ -62,7 +62,7 @@ export const reviews: Migration = {
       check ((state = 'refused') = (refusal is not null)),
       check ((state = 'accepted') <= (frame_ticks is not null and time_base > 0))
     ) strict;
-    create index clips_by_review on clips (review_id, created_at_ms);
+    create index clips_by_review on clips (review_id, created_at_ms, id);
     create index clips_unread on clips (completed_at_ms) where state = 'reading';
 
     create table uploads (

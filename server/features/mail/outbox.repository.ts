@@ -1,4 +1,5 @@
 import type { Insertable, Selectable } from 'kysely'
+import { sql } from 'kysely'
 import type { Database } from '#server/database/client'
 import type { OutboxTable } from '#server/database/schema/running'
 
@@ -14,7 +15,7 @@ export async function claimDueLetters(db: Database, nowMs: number, limit: number
   return db.updateTable('outbox')
     .set({ leased_until_ms: nowMs + leaseMs, due_at_ms: nowMs + leaseMs })
     .where('id', 'in', db.selectFrom('outbox').select('id')
-      .where('state', '=', 'waiting').where('due_at_ms', '<=', nowMs)
+      .where('state', '=', sql.lit('waiting')).where('due_at_ms', '<=', nowMs)
       .orderBy('due_at_ms').orderBy('id').limit(limit))
     .returningAll()
     .execute()

@@ -1,4 +1,5 @@
 import type { Insertable, Selectable, Updateable } from 'kysely'
+import { sql } from 'kysely'
 import type { Database } from '#server/database/client'
 import type { OrdersTable } from '#server/database/schema/money'
 
@@ -47,7 +48,7 @@ export async function listOrderIds(db: Database, reviewId: string): Promise<stri
 /** Orders of which nothing has been heard for a while. */
 export async function listOrdersToLookAt(db: Database, nowMs: number, limit: number): Promise<OrderRow[]> {
   return db.selectFrom('orders').selectAll()
-    .where('state', '=', 'open').where('look_at_ms', '<=', nowMs)
+    .where('state', '=', sql.lit('open')).where('look_at_ms', '<=', nowMs)
     .orderBy('look_at_ms').orderBy('id')
     .limit(limit)
     .execute()

@@ -1,4 +1,5 @@
 import type { Insertable } from 'kysely'
+import { sql } from 'kysely'
 import type { Database } from '#server/database/client'
 import type { RefundsTable } from '#server/database/schema/money'
 
@@ -12,7 +13,7 @@ export async function listRefundsDue(db: Database, nowMs: number, limit: number)
     .innerJoin('orders', 'orders.id', 'refunds.order_id')
     .selectAll('refunds')
     .select(['orders.payment_id', 'orders.student_id'])
-    .where('refunds.state', '=', 'wanted').where('refunds.due_at_ms', '<=', nowMs)
+    .where('refunds.state', '=', sql.lit('wanted')).where('refunds.due_at_ms', '<=', nowMs)
     .orderBy('refunds.due_at_ms').orderBy('refunds.id')
     .limit(limit)
     .execute()

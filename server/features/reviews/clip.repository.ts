@@ -1,4 +1,5 @@
 import type { Insertable, Selectable, Updateable } from 'kysely'
+import { sql } from 'kysely'
 import type { ViewerFacts } from '#server/context'
 import type { Database } from '#server/database/client'
 import type { ClipsTable } from '#server/database/schema/reviews'
@@ -27,7 +28,7 @@ export type ClipRecord = NonNullable<Awaited<ReturnType<typeof findVisibleClip>>
 /** Clips that were sent whole and are due to be read by whoever finds them: a server ended in between. */
 export async function listUnreadClips(db: Database, nowMs: number, limit: number): Promise<ClipRow[]> {
   return db.selectFrom('clips').selectAll()
-    .where('state', '=', 'reading').where('read_due_at_ms', '<=', nowMs)
+    .where('state', '=', sql.lit('reading')).where('read_due_at_ms', '<=', nowMs)
     .orderBy('read_due_at_ms')
     .limit(limit)
     .execute()
@@ -37,7 +38,7 @@ export async function listUnreadClips(db: Database, nowMs: number, limit: number
 export async function takeReading(db: Database, clip: ClipRow, untilMs: number): Promise<boolean> {
   const result = await db.updateTable('clips')
     .set({ read_due_at_ms: untilMs, read_attempts: clip.read_attempts + 1 })
-    .where('id', '=', clip.id).where('state', '=', 'reading').where('read_attempts', '=', clip.read_attempts)
+    .where('id', '=', clip.id).where('state', '=', sql.lit('reading')).where('read_attempts', '=', clip.read_attempts)
     .executeTakeFirst()
   return result.numUpdatedRows === 1n
 }

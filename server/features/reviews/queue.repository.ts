@@ -1,3 +1,4 @@
+import { sql } from 'kysely'
 import type { ViewerFacts } from '#server/context'
 import type { Database } from '#server/database/client'
 import { visibleTo } from './review.policy'
@@ -5,7 +6,7 @@ import { visibleTo } from './review.policy'
 function openTurnarounds(db: Database, viewer: ViewerFacts) {
   return db.selectFrom('turnarounds')
     .innerJoin('reviews', 'reviews.id', 'turnarounds.review_id')
-    .where('turnarounds.status', '<>', 'stopped')
+    .where('turnarounds.status', '<>', sql.lit('stopped'))
     .where(visibleTo(viewer))
 }
 
@@ -53,8 +54,8 @@ export async function listPromisesAhead(db: Database, coachId: string | null, li
   return db.selectFrom('turnarounds')
     .innerJoin('reviews', 'reviews.id', 'turnarounds.review_id')
     .select(['turnarounds.promised_at_ms', 'reviews.state'])
-    // Said twice: the index on open turnarounds is found only by its own condition.
-    .where('turnarounds.status', '<>', 'stopped').where('turnarounds.status', '=', 'running')
+    // Said twice, and as a literal: SQLite finds the index on open turnarounds only by its own condition, never by a bound value.
+    .where('turnarounds.status', '<>', sql.lit('stopped')).where('turnarounds.status', '=', 'running')
     .where(eb => coachId === null
       ? eb('reviews.chosen_coach_id', 'is', null)
       : eb.or([eb('reviews.chosen_coach_id', '=', coachId), eb('reviews.coach_id', '=', coachId)]))
