@@ -34,9 +34,14 @@ export async function write<T>(ctx: Ctx, work: (db: Database) => Promise<T>): Pr
     }
     return result
   })
+  pokeJobs(ctx)
+  return answer
+}
+
+/** Wakes the jobs that a committed change asked for. */
+export function pokeJobs(ctx: Ctx): void {
   ctx.pokesAfterWrite.forEach(job => ctx.poke(job))
   ctx.pokesAfterWrite.clear()
-  return answer
 }
 
 async function claimKey(db: Database, { scope, key, requestHash }: RepeatableRequest, nowMs: number): Promise<void> {

@@ -75,18 +75,24 @@ async function readRepeatable(event: H3Event, form: UploadLimits | undefined): P
   const viewer = await findViewer(event, app, app.clock.nowMs())
   // A stranger is turned away in any case: nobody's files are read for that.
   if (form && !viewer) return undefined
+  const asked = form ? await describeForm(event, form) : await readBodyText(event)
+  if (asked === undefined) return undefined
   return {
     // Hashed: some addresses carry a link's secret.
     scope: `${viewer?.id ?? 'visitor'} ${keyedHash(app.settings.sessionPassword, event.path.split('?')[0] ?? '')}`,
     key,
     // The body may hold a password: nobody with the file alone may test guesses against it.
-    requestHash: keyedHash(app.settings.sessionPassword, form ? await describeForm(event, form) : await readBodyText(event)),
+    requestHash: keyedHash(app.settings.sessionPassword, asked),
   }
 }
 
-/** What a form asks for, without its boundary, which a browser makes anew each time it sends the same form. */
-async function describeForm(event: H3Event, form: UploadLimits): Promise<string> {
-  const files = await readUpload(event, form)
+/**
+ * What a form asks for, without its boundary, which a browser makes anew each time it sends the same form. Undefined for one that cannot be read:
+ * the work says so, after asking who sends it.
+ */
+async function describeForm(event: H3Event, form: UploadLimits): Promise<string | undefined> {
+  const files = await readUpload(event, form).catch(() => undefined)
+  if (!files) return undefined
   const digests = files.map(({ field, bytes }) => `${field} ${createHash('sha256').update(bytes).digest('hex')}`)
   return [event.path.split('?')[1] ?? '', ...digests].join('\n')
 }

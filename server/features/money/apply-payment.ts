@@ -15,8 +15,8 @@ import { insertRefund, sumWantedMinor } from './refund.repository'
 /** An open order was paid: money in, credits to the student, the review into the queue; or the money back when there is nothing left to pay for. */
 export async function applyPaid(db: Database, ctx: Ctx, order: OrderRecord, payment: PaymentIntentSnapshot): Promise<void> {
   const review = order.review_id === null ? undefined : await findReview(db, order.review_id)
-  const isWanted = review?.state === 'unpaid' || review?.state === 'draft'
-  const isForNothing = order.kind === 'single' && !isWanted
+  // A student who went back to the draft keeps what was paid as a credit, to send the review with when it is ready.
+  const isForNothing = order.kind === 'single' && review?.state !== 'unpaid' && review?.state !== 'draft'
   await updateOrder(db, order.id, { state: isForNothing ? 'duplicate' : 'paid', payment_id: payment.id, settled_at_ms: ctx.nowMs })
   await insertMovement(db, {
     id: `sale:${order.id}`, reason: 'sale', lines: saleLines(order.amount_minor), currency: order.currency,
@@ -31,10 +31,10 @@ export async function applyPaid(db: Database, ctx: Ctx, order: OrderRecord, paym
     await queueLetter(db, ctx, { letter: 'receipt', event: order.id, subjectId: order.id, to: { userId: order.student_id } })
   }
   const credit = await findCreditOfOrder(db, order.id)
-  if (!review || !isWanted || !credit) return
+  if (review?.state !== 'unpaid' || !credit) return
   await enterQueue(db, ctx, review, {
     credit,
-    from: review.state === 'draft' ? 'draft' : 'unpaid',
+    from: 'unpaid',
     // The page was closed by then, so however late we hear of it, it was paid before.
     atMs: Math.min(ctx.nowMs, order.checkout_expires_at_ms),
     quote: { promisedAtMs: order.quoted_promise_at_ms, quotedAtMs: order.quoted_at_ms },

@@ -3,6 +3,7 @@ import type { CheckoutSnapshot, PaymentIntentSnapshot } from '#server/adapters/p
 import type { Ctx, SignedInCtx } from '#server/context'
 import { inTransaction } from '#server/database/transaction'
 import { getReviewRecord } from '#server/features/reviews/review.service'
+import { pokeJobs } from '#server/write'
 import { applyExpired, applyGivenBack, applyPaid } from './apply-payment'
 import { reachingProvider } from './checkout.service'
 import type { OrderRecord } from './order.repository'
@@ -33,7 +34,7 @@ export async function settleOrder(ctx: Ctx, orderId: string): Promise<void> {
     const settled = await findOrder(db, orderId)
     if (settled && facts.payment) await applyGivenBack(db, ctx, settled, facts.payment)
   })
-  ctx.pokesAfterWrite.forEach(job => ctx.poke(job))
+  pokeJobs(ctx)
 }
 
 async function readProvider(ctx: Ctx, checkoutId: string): Promise<ProviderFacts> {
