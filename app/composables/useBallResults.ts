@@ -8,7 +8,7 @@ import type { SpanMs } from '~/utils/made-clip'
 export type BallResult = Omit<SwingInput, 'fromMs' | 'toMs'>
 
 /** What the ball did in each swing of one view. It is kept in this browser from the tap on, and by the studio once it has the clip. */
-export function useBallResults(reviewId: MaybeRefOrGetter<string | undefined>, view: ClipView, clip: () => ClipBrief | undefined) {
+export function useBallResults(reviewId: MaybeRefOrGetter<string>, view: ClipView, clip: () => ClipBrief | undefined) {
   /** What was said here and may not have reached the studio yet. */
   const said = ref<SwingInput[]>()
   const swings = computed<SwingInput[]>(() => said.value ?? clip()?.swings.map(withoutId) ?? [])
@@ -56,14 +56,16 @@ export function useBallResults(reviewId: MaybeRefOrGetter<string | undefined>, v
     forgetSwings(toValue(reviewId), view)
   }
 
-  onMounted(() => {
+  /** What was said on an earlier visit and did not reach the studio. */
+  function recall() {
     said.value ??= findKeptSwings(toValue(reviewId), view)
-  })
+  }
+  onMounted(recall)
   watch(() => [clip()?.id, clip()?.state, said.value !== undefined] as const, ([, state, hasSaid]) => {
     if (state === 'accepted' && hasSaid && findKeptSwings(toValue(reviewId), view) !== undefined) autosave.touch()
   })
 
-  return { swings, begin, change, changeAll, forget, state: autosave.state, problem: autosave.problem }
+  return { swings, begin, change, changeAll, forget, recall, state: autosave.state, problem: autosave.problem }
 }
 
 function withoutId({ fromMs, toMs, contact, flight, carryM, surface }: SwingInput): SwingInput {

@@ -1,6 +1,7 @@
 import type { ChangeReview } from '#shared/schemas/reviews'
 import type { ReviewView, SubmitAnswer } from '#shared/types/reviews'
 import type { FieldErrors } from '#shared/types/answers'
+import { findQuestion, keepQuestion, type KeptQuestion } from '~/utils/kept-question'
 import { rememberChoice, type PayMeans } from '~/utils/pay-means'
 
 /** What a student fills in, all of it text but the coach. */
@@ -19,18 +20,46 @@ const EMPTY_FIELDS: ReviewFields = {
   title: '', question: '', area: 'full_swing', club: '7-iron', misses: '', tried: '', chosenCoachId: '',
 }
 
+interface Asker {
+  /** Chosen by the link that was followed. */
+  coachId?: string
+  /** Nobody is signed in: the question lies in this browser until there is an account. */
+  isVisitor: boolean
+}
+
 /** A review being asked: it is made on the server at the first change and follows what is typed. */
-export function useNewReview(draft: ReviewView | undefined) {
+export function useNewReview(draft: ReviewView | undefined, { coachId = '', isVisitor }: Asker) {
   const router = useRouter()
   const reviewId = ref(draft?.id)
-  const fields = reactive<ReviewFields>(draft === undefined ? { ...EMPTY_FIELDS } : readFields(draft))
+  const fields = reactive<ReviewFields>(draft === undefined ? { ...EMPTY_FIELDS, chosenCoachId: coachId } : readFields(draft))
+  const handedness = ref<KeptQuestion['handedness']>(draft?.handedness ?? 'right')
+  const isKeptHere = ref(false)
   let saved: ReviewFields = { ...fields }
   // Sent again as it was when the first answer got lost, so that one question does not become two drafts.
   let creation: { key: string, body: ReviewFields } | undefined
   const autosave = useAutosave(save)
   const submitting = useDeed()
 
+  /** After a change. A visitor's is kept at once: there is no server to wait for. */
+  function touch() {
+    if (isVisitor) isKeptHere.value = keepQuestion({ fields: { ...fields }, handedness: handedness.value })
+    else autosave.touch()
+  }
+
+  /** Fills in what was asked here before; what was typed meanwhile stays. True when there was something. */
+  function recall(): boolean {
+    const kept = draft === undefined ? findQuestion() : undefined
+    if (kept === undefined) return false
+    handedness.value = kept.handedness
+    for (const name of FIELD_NAMES) {
+      if (fields[name] === EMPTY_FIELDS[name]) fields[name] = kept.fields[name] ?? fields[name]
+    }
+    isKeptHere.value = true
+    return true
+  }
+
   async function save() {
+    if (isVisitor) return
     if (reviewId.value === undefined) await create()
     const sent = { ...fields }
     const change = changeBetween(saved, sent)
@@ -55,6 +84,7 @@ export function useNewReview(draft: ReviewView | undefined) {
 
   /** The draft's id, made now when there is none; undefined when it could not be made. */
   async function ensureDraft(): Promise<string | undefined> {
+    if (isVisitor) return undefined
     if (reviewId.value === undefined) autosave.touch()
     await autosave.flush()
     return reviewId.value
@@ -81,7 +111,10 @@ export function useNewReview(draft: ReviewView | undefined) {
     return answer
   }
 
-  return { reviewId, fields, touch: autosave.touch, saveState: autosave.state, saveProblem: autosave.problem, ensureDraft, findMissing, submit, submitting }
+  return {
+    reviewId, fields, handedness, isVisitor, isKeptHere, touch, recall, ensureDraft, findMissing, submit, submitting,
+    saveState: autosave.state, saveProblem: autosave.problem,
+  }
 }
 
 function readFields(draft: ReviewView): ReviewFields {

@@ -1,6 +1,6 @@
 import type { MaybeRefOrGetter } from 'vue'
 import type { OfferList, PromiseQuote } from '#shared/types/offers'
-import type { CoachList } from '#shared/types/people'
+import type { CoachBrief, CoachList } from '#shared/types/people'
 
 /** What is sold. */
 export function useOffers() {
@@ -12,6 +12,12 @@ export function useOffers() {
 export function useCoaches() {
   const request = useFetch<CoachList>('/api/coaches', { key: 'coaches' })
   return { coaches: computed(() => request.data.value?.items ?? []), error: request.error, isReady: request }
+}
+
+/** The coach of a link; an error 404 when there is none. */
+export function useCoach(slug: string) {
+  const request = useFetch<CoachBrief>(`/api/coaches/${encodeURIComponent(slug)}`, { key: `coach-${slug}` })
+  return { coach: request.data, error: request.error, isReady: request }
 }
 
 /** By when an answer would come, for one offer and one coach (empty: the first who is free). Asked only when `ask` is called. */

@@ -1,8 +1,9 @@
 import type { SignIn } from '#shared/schemas/accounts'
 import type { SessionAnswer } from '#shared/types/people'
 import { findReturnPath, firstScreen } from '~/utils/first-screen'
+import { findQuestion } from '~/utils/kept-question'
 
-/** Goes on after signing in: to the page that was asked for (`?to=`), else to the person's first screen. */
+/** Goes on after signing in: to the page that was asked for (`?to=`), to a question begun before, else to the person's first screen. */
 export function useEntry() {
   const route = useRoute()
   const { refresh } = useViewer()
@@ -10,7 +11,9 @@ export function useEntry() {
   async function enter(answer: SessionAnswer) {
     await refresh()
     const start = answer.viewer ? firstScreen(answer.viewer) : '/'
-    await navigateTo(findReturnPath(route.query.to) ?? start)
+    // A question that was asked before there was an account goes on.
+    const asked = answer.viewer?.role === 'student' && findQuestion() !== undefined ? '/reviews/new?step=send' : undefined
+    await navigateTo(findReturnPath(route.query.to) ?? asked ?? start)
   }
 
   return { enter }

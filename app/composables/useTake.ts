@@ -5,23 +5,24 @@ import type { ClipView } from '#shared/types/reviews'
 import type { OpenedClip, Progress, SpanS } from '~/film/prepare'
 import { fitSwings, swingRange } from '~/utils/swing-spans'
 import { madeFrom, type MadeClip } from '~/utils/made-clip'
-import { NOT_DELIVERED, NOT_LOADED, NOT_MADE } from '~/utils/take-words'
+import { NOT_LOADED, NOT_MADE } from '~/utils/take-words'
 
 /** `choosing`: its swings are being chosen; `making`: it is made ready; `refused`: it cannot be used. */
 type TakePhase = 'none' | 'reading' | 'choosing' | 'making' | 'refused'
 
 /**
  * A clip chosen on this device, until it is made ready and handed on.
- * @param deliver hands the ready clip on; false when it could not be taken just now
+ * @param deliver hands the ready clip on; words when it could not be taken just now, else none
  */
 export function useTake(
   view: ClipView,
   context: MaybeRefOrGetter<Omit<FilmContext, 'view' | 'saidFramesPerSecond'>>,
-  deliver: (made: MadeClip) => Promise<boolean>,
+  deliver: (made: MadeClip) => Promise<string>,
 ) {
   const phase = ref<TakePhase>('none')
   const opened = shallowRef<OpenedClip>()
-  const swings = ref<SpanS[]>([])
+  // Shallow, since a worker takes no proxies.
+  const swings = shallowRef<SpanS[]>([])
   const isLooking = ref(false)
   /** Frames a second it was filmed at, as the person says. */
   const said = ref<number>()
@@ -118,12 +119,12 @@ export function useTake(
     const { ClipProblem, explainWay, prepareClip } = await import('~/film/prepare')
     try {
       if (made === undefined) {
-        const prepared = await prepareClip(clip, { keep: [...swings.value], signal, onProgress: told => void (progress.value = told) })
+        const prepared = await prepareClip(clip, { keep: swings.value, signal, onProgress: told => void (progress.value = told) })
         if (prepared.reason !== undefined) return refuse({ title: FILM_REFUSALS[prepared.reason].title, whatToDo: explainWay(prepared) })
         made = madeFrom(view, prepared, said.value)
       }
-      if (await deliver(made)) return reset()
-      problem.value = NOT_DELIVERED
+      problem.value = await deliver(made)
+      if (problem.value === '') return reset()
     }
     catch (error) {
       if (signal.aborted) return

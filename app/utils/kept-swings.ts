@@ -9,8 +9,7 @@ import type { ClipView } from '#shared/types/reviews'
 
 const keyOf = (reviewId: string, view: ClipView) => `turfnote-swings-${reviewId}-${view}`
 
-export function keepSwings(reviewId: string | undefined, view: ClipView, swings: readonly SwingInput[]): void {
-  if (reviewId === undefined) return
+export function keepSwings(reviewId: string, view: ClipView, swings: readonly SwingInput[]): void {
   try {
     localStorage.setItem(keyOf(reviewId, view), JSON.stringify(swings))
   }
@@ -20,8 +19,7 @@ export function keepSwings(reviewId: string | undefined, view: ClipView, swings:
 }
 
 /** Undefined when nothing waits for this view, or what is there cannot be read. */
-export function findKeptSwings(reviewId: string | undefined, view: ClipView): SwingInput[] | undefined {
-  if (reviewId === undefined) return undefined
+export function findKeptSwings(reviewId: string, view: ClipView): SwingInput[] | undefined {
   try {
     return readSwings(JSON.parse(localStorage.getItem(keyOf(reviewId, view)) ?? 'null'))
   }
@@ -30,8 +28,7 @@ export function findKeptSwings(reviewId: string | undefined, view: ClipView): Sw
   }
 }
 
-export function forgetSwings(reviewId: string | undefined, view: ClipView): void {
-  if (reviewId === undefined) return
+export function forgetSwings(reviewId: string, view: ClipView): void {
   try {
     localStorage.removeItem(keyOf(reviewId, view))
   }

@@ -1,10 +1,11 @@
 import { mkdirSync, writeFileSync } from 'node:fs'
 import { availableParallelism, loadavg } from 'node:os'
-import { api } from './api'
+import { api, prepare } from './api'
 import type { Bench } from './bench'
 import { tableOf } from './bench'
+import { prepare } from './prepare'
 
-const BENCHES: Record<string, Bench> = { api }
+const BENCHES: Record<string, Bench> = { api, prepare }
 const RESULTS_DIR = '.bench'
 
 /** `npm run bench <name>`: a table, and the same as JSON; ends with 1 when an aim was missed. */

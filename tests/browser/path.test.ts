@@ -25,6 +25,7 @@ async function askAsStudent(page: Page): Promise<void> {
   await page.getByLabel('Your question').fill('With my irons I hit one heavy and the next one thin. Why?')
   await page.getByRole('button', { name: 'Go on' }).click()
   await page.getByLabel('Film or choose a clip, Face-on').setInputFiles(FILM)
+  await page.getByRole('button', { name: /^Keep th/ }).click()
   await expect(page.getByRole('region', { name: 'Face-on clip' })).toContainText('Taken.', { timeout: 20_000 })
   await page.getByRole('button', { name: 'Go on' }).click()
   await page.getByRole('radio', { name: /First who is free/i }).check()

@@ -1,8 +1,9 @@
 import type { Fault } from './fault'
+import { filmKills } from './film/kills'
 import { kill } from './kill'
 
 /** The long fault tests; their short forms run with `npm test`. */
-const FAULTS: Record<string, Fault> = { kill }
+const FAULTS: Record<string, Fault> = { kill, 'film-kills': filmKills }
 
 /** `npm run test:faults [name]`: each fault, and its control that must fail. Ends with 1 when one did not hold or a control found nothing. */
 async function main(name: string | undefined): Promise<void> {

@@ -14,10 +14,21 @@ export function stageLine({ name, seconds, outcomes }: StageResult): string {
 export function stageFailures({ outcomes, output }: StageResult): string {
   const failures = outcomes.filter(outcome => !outcome.hasPassed)
   if (failures.length === 0) return ''
-  const told = failures.map(failure => `  ✗ ${failure.file ? `${failure.file}: ` : ''}${failure.title}\n${indent(firstLines(failure.message))}`)
+  const details = detailsIn(output)
+  const told = failures.map((failure) => {
+    const message = details === '' ? firstLines(failure.message, MESSAGE_LINES) : firstLines(failure.message, 1)
+    return `  ✗ ${failure.file ? `${failure.file}: ` : ''}${failure.title}\n${indent(message)}`
+  })
   // Only a failure of the whole stage needs all that was printed: single tests speak for themselves.
-  const rest = failures.some(failure => failure.file === undefined) && output.trim() !== '' ? [indent(lastLines(output))] : []
-  return [...told, ...rest].join('\n')
+  const isWhole = failures.some(failure => failure.file === undefined)
+  const rest = isWhole ? lastLines(output) : firstLines(details, OUTPUT_LINES)
+  return [...told, ...rest === '' ? [] : [indent(rest)]].join('\n')
+}
+
+/** Vitest's report as JSON leaves out what was expected and what came; what it prints for people holds it, from this heading on. */
+function detailsIn(output: string): string {
+  const start = output.search(/^⎯+ Failed (?:Tests|Suites) /m)
+  return start === -1 ? '' : output.slice(start)
 }
 
 export function countOutcomes(outcomes: readonly Outcome[]): { passed: number, failed: number } {
@@ -34,9 +45,10 @@ export function exitCode({ passed, failed }: { passed: number, failed: number })
   return failed > 0 || passed === 0 ? 1 : 0
 }
 
-function firstLines(text: string): string {
+function firstLines(text: string, count: number): string {
   const lines = text.trimEnd().split('\n')
-  return lines.length <= MESSAGE_LINES ? lines.join('\n') : [...lines.slice(0, MESSAGE_LINES), `… ${lines.length - MESSAGE_LINES} more lines`].join('\n')
+  if (lines.length <= count) return lines.join('\n')
+  return count === 1 ? lines[0] ?? '' : [...lines.slice(0, count), `… ${lines.length - count} more lines`].join('\n')
 }
 
 function lastLines(text: string): string {

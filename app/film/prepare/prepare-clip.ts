@@ -21,7 +21,9 @@ export interface PrepareRequest extends Waiting {
  */
 export async function prepareClip({ file, facts }: Pick<OpenedClip, 'file' | 'facts'>, { keep, onProgress, signal }: PrepareRequest): Promise<PreparedClip> {
   try {
-    const word = await askWorker({ kind: 'prepare', file, keep }, { onProgress, signal })
+    // Copied, since what a screen watches for changes cannot be sent to a worker.
+    const copy = keep.map(([fromS, toS]): SpanS => [fromS, toS])
+    const word = await askWorker({ kind: 'prepare', file, keep: copy }, { onProgress, signal })
     if (word.kind !== 'prepared') throw new WorkerFailed('The worker answered something else.')
     const { bytes, ...prepared } = word.prepared
     return { ...prepared, file: prepared.way === 'untouched' ? file : new File([bytes], mp4Name(file.name), { type: 'video/mp4' }) }

@@ -18,7 +18,8 @@ async function run(task: WorkerTask): Promise<FromWorker> {
   const watch = makeWatch()
   try {
     if (task.kind === 'measure-motion') return { kind: 'motion', samples: await measureMotion(task.file, watch) }
-    await forgetOld(Date.now())
+    // Beside the work, not before it; what it does not get to is for the next time.
+    void forgetOld(Date.now()).catch(() => undefined)
     return { kind: 'prepared', prepared: await prepareFilm(task.file, task.keep, watch) }
   }
   catch (error) {

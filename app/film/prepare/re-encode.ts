@@ -25,7 +25,7 @@ export interface ReEncoding {
 /**
  * Decodes the kept frames and encodes each of them again at its own time, upright and not larger than it may be.
  *
- * One frame at a time is held, and the few that decoder and encoder hold themselves.
+ * One frame at a time is held here, and those that decoder (at most 40 ahead) and encoder hold themselves.
  *
  * @throws FramesLost when not every kept frame came out; whatever decoder and encoder throw; the signal's reason
  */

@@ -32,3 +32,11 @@ export async function prepareOn(page: Page, path: string, keep: SpanS[]): Promis
   const bytes = new Uint8Array(Buffer.from(made.base64, 'base64'))
   return { ...made, bytes, output: await readOutput(bytes) }
 }
+
+/** Lines that run before the worker's own, as if its browser were another. */
+export async function inWorker(page: Page, lines: string): Promise<void> {
+  await page.route('**/prepare.worker-*.js', async (route) => {
+    const answer = await route.fetch()
+    await route.fulfill({ response: answer, body: `${lines};\n${await answer.text()}` })
+  })
+}

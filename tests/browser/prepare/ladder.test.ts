@@ -1,15 +1,7 @@
-import type { Page } from '@playwright/test'
 import { FILM_REFUSALS } from '#shared/domain/film/refusals'
-import { readTruth } from '#tests/support/film/films'
-import { expect, prepareOn, test } from './fixtures'
-
-/** Lines that run before the worker's own, as if its browser were another. */
-async function inWorker(page: Page, lines: string): Promise<void> {
-  await page.route('**/prepare.worker-*.js', async (route) => {
-    const answer = await route.fetch()
-    await route.fulfill({ response: answer, body: `${lines}\n${await answer.text()}` })
-  })
-}
+import { addToIndex, metadata } from '#tests/support/film/boxes'
+import { readMadeFilm, readTruth } from '#tests/support/film/films'
+import { expect, inWorker, prepareOn, test } from './fixtures'
 
 test('[film.2] sound, place and phone details are gone from what is sent', async ({ page }) => {
   for (const name of ['with-sound.mp4', 'place-in-keys.mov', 'place-in-user-data.mp4', 'place-in-text.mov', 'place.webm']) {
@@ -18,6 +10,18 @@ test('[film.2] sound, place and phone details are gone from what is sent', async
     const text = Buffer.from(bytes).toString('latin1')
     for (const word of ['+55.7000', '-002.9000', 'ISO6709', 'Phone 1', 'soun', 'mp4a', 'location']) expect(text.includes(word), `${word} in ${name}`).toBe(false)
   }
+})
+
+test('[film.2] tells the rate that slow motion was filmed at, whose tag is gone', async ({ page }) => {
+  const value = Buffer.alloc(4)
+  value.writeFloatBE(240)
+  const body = addToIndex(readMadeFilm('plain-30.mp4'), metadata('com.android.capture.fps', 23, value))
+  expect(body.toString('latin1')).toContain('com.android.capture.fps')
+  await page.route('**/films/slowed.mp4', route => route.fulfill({ contentType: 'video/mp4', body }))
+  const { prepared, output, bytes } = await prepareOn(page, '/films/slowed.mp4', [[0.5, 1.5]])
+  expect(prepared).toMatchObject({ way: 're-encoded', captureFramesPerSecond: 240, frames: 30 })
+  expect(output.rawTags).toEqual([])
+  expect(Buffer.from(bytes).toString('latin1')).not.toContain('android')
 })
 
 test('[film.2] a film that this browser cannot decode and no other would show is explained, not sent', async ({ page }) => {

@@ -2,10 +2,11 @@ import { randomUUID } from 'node:crypto'
 import sharp from 'sharp'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { z } from 'zod'
-import type { DemoKey } from '#fakes/demo/people'
 import { arrange } from '#tests/support/arrange'
 import { call } from '#tests/support/call'
 import { sendClip, startDraft } from '#tests/support/path'
+import type { PhotoOptions } from '#tests/support/photo'
+import { sendPhoto } from '#tests/support/photo'
 import { mismatches, readStore } from '#tests/support/store'
 import type { World } from '#tests/support/world'
 import { startWorld } from '#tests/support/world'
@@ -18,25 +19,16 @@ beforeAll(async () => {
 
 afterAll(() => world.close())
 
-interface Sending { as?: DemoKey, kind?: string, field?: string, key?: string }
-
-/** As a page sends it: the browser makes the form and a boundary of its own each time. */
-async function send(reviewId: string, bytes: Uint8Array<ArrayBuffer>, { as = 'student', kind = 'ground_mark', field = 'photo', key = randomUUID() }: Sending = {}) {
-  const body = new FormData()
-  body.append(field, new Blob([bytes], { type: 'image/jpeg' }), '../mark.jpg')
-  const response = await fetch(`${world.url}/api/reviews/${reviewId}/photos?kind=${kind}`, {
-    method: 'POST', body, headers: { 'sec-fetch-site': 'same-origin', 'cookie': world.cookie(as), 'idempotency-key': key },
-  })
-  const answer: unknown = await response.json()
-  return { status: response.status, body: answer }
+function send(reviewId: string, bytes: Uint8Array, options: PhotoOptions = {}) {
+  return sendPhoto(world, reviewId, { kind: 'ground_mark', bytes, ...options })
 }
 
-async function photo(width = 3000, height = 2000, background = '#3f7d20'): Promise<Uint8Array<ArrayBuffer>> {
+async function photo(width = 3000, height = 2000, background = '#3f7d20'): Promise<Buffer> {
   const picture = sharp({ create: { width, height, channels: 3, background } })
-  return new Uint8Array(await picture.withExif({ IFD0: { Make: 'Planted maker' }, IFD3: { GPSLatitude: '38/1 43/1 0/1' } }).jpeg().toBuffer())
+  return picture.withExif({ IFD0: { Make: 'Planted maker' }, IFD3: { GPSLatitude: '38/1 43/1 0/1' } }).jpeg().toBuffer()
 }
 
-async function sent(reviewId: string, options: Sending = {}): Promise<string> {
+async function sent(reviewId: string, options: PhotoOptions = {}): Promise<string> {
   const { body } = await send(reviewId, await photo(200, 150), options)
   return z.object({ id: z.string() }).parse(body).id
 }
@@ -45,7 +37,7 @@ describe('a photograph beside the clips', () => {
   it('is made anew: at most 1600 pixels, WebP, without its tags, and shown with the review', async () => {
     const reviewId = await startDraft(world, 'student')
     const original = await photo()
-    expect(Buffer.from(original).includes('Planted maker')).toBe(true)
+    expect(original.includes('Planted maker')).toBe(true)
     const { status, body } = await send(reviewId, original, { kind: 'face_mark' })
     expect({ status, body }).toMatchObject({ status: 201, body: { kind: 'face_mark', widthPx: 1600, heightPx: 1067 } })
     expect((await call(world, 'GET', `/api/reviews/${reviewId}`, { as: 'student' })).body).toMatchObject({ photos: [body] })
@@ -98,8 +90,7 @@ describe('a photograph beside the clips', () => {
 
   it('there are six to a review, and what is refused leaves nothing behind', async () => {
     const reviewId = await startDraft(world, 'student')
-    const ids = await Promise.all(Array.from({ length: 9 }, (_, index) => send(reviewId, new Uint8Array(0), { key: `warm-up-${index}-${reviewId}` })))
-    expect(ids.every(({ status }) => status === 415)).toBe(true)
+    expect((await send(reviewId, new Uint8Array(0))).status).toBe(415)
     // At once, so that each finds room before the others are written down.
     const small = await photo(120, 90)
     const answers = await Promise.all(Array.from({ length: 9 }, () => send(reviewId, small)))

@@ -1,8 +1,8 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { z } from 'zod'
 import { call } from '#tests/support/call'
 import { HOSTILE_FILMS } from '#tests/support/film/hostile'
 import { idOf, startDraft, uploadClip } from '#tests/support/path'
+import { readStore } from '#tests/support/store'
 import type { World } from '#tests/support/world'
 import { startWorld } from '#tests/support/world'
 
@@ -32,9 +32,15 @@ async function longestAnswerMs(isDone: () => boolean): Promise<{ answers: number
   return { answers, longestMs }
 }
 
-describe('[house.5] hostile film on the built server', () => {
+describe('[house.5] hostile and broken film on the built server', () => {
   // An empty file gets no upload at all.
   const names = Object.keys(HOSTILE_FILMS).filter(name => HOSTILE_FILMS[name]?.().length !== 0)
+
+  it('[film.3] there are at least sixty, each another', () => {
+    const different = new Set(names.map(name => HOSTILE_FILMS[name]?.().toString('latin1')))
+    expect(different.size).toBe(names.length)
+    expect(names.length).toBeGreaterThanOrEqual(60)
+  })
 
   it('[house.5] there is one that claims 2^31 samples', () => {
     expect(names.filter(name => name.startsWith('2^31')).length).toBeGreaterThan(0)
@@ -42,7 +48,7 @@ describe('[house.5] hostile film on the built server', () => {
 
   for (const name of names) {
     const limitMs = name.startsWith('2^31') ? SAMPLES_REFUSED_WITHIN_MS : READER_LIMIT_MS
-    it(`[house.5] ${name}: refused in under ${limitMs / 1000} seconds, and other requests are answered meanwhile`, async () => {
+    it(`[house.5] [film.3] ${name}: refused in under ${limitMs / 1000} seconds, and other requests are answered meanwhile`, async () => {
       const reviewId = await startDraft(world, 'student')
       const { clipId } = await uploadClip(world, 'student', reviewId, { bytes: HOSTILE_FILMS[name]?.() })
       let isDone = false
@@ -53,7 +59,7 @@ describe('[house.5] hostile film on the built server', () => {
       })
       const { answers, longestMs } = await longestAnswerMs(() => isDone)
       const { answer, tookMs } = await completed
-      expect(answer.body).toMatchObject({ id: clipId, state: 'refused' })
+      expect(answer.body).toMatchObject({ id: clipId, state: 'refused', refusal: expect.stringMatching(/^(?:unreadable|not-video)$/) })
       expect(tookMs).toBeLessThan(limitMs)
       expect(answers).toBeGreaterThan(0)
       expect(longestMs).toBeLessThan(1000)
@@ -61,14 +67,13 @@ describe('[house.5] hostile film on the built server', () => {
     })
   }
 
-  it('an empty file is refused before anything is sent', async () => {
+  it('[film.3] an empty file is refused before anything is sent', async () => {
     const reviewId = await startDraft(world, 'student')
     const answer = await call(world, 'POST', `/api/reviews/${reviewId}/clips`, { as: 'student', body: { view: 'face_on', fileName: 'empty.mp4', bytes: 0, contentType: 'video/mp4' } })
     expect(answer).toMatchObject({ status: 422, body: { data: { fields: { bytes: 'This file is empty.' } } } })
   })
 
-  it('[house.5] nothing of them is left in the store', async () => {
-    const state: unknown = await (await fetch(`${world.standIns.storageUrl}/__fake__/state`)).json()
-    expect(z.object({ objects: z.array(z.unknown()) }).parse(state).objects).toEqual([])
+  it('[house.5] [film.3] nothing of them is left in the store', async () => {
+    expect(await readStore(world)).toEqual({ objects: [], uploads: [] })
   })
 })

@@ -1,6 +1,8 @@
 import type { DemoKey } from '#fakes/demo/people'
+import { arrange } from '#tests/support/arrange'
 import { call } from '#tests/support/call'
 import { answered, saveLetter, startDraft, submitted, takenUp, uploadClip } from '#tests/support/path'
+import { sendPhoto } from '#tests/support/photo'
 import type { World } from '#tests/support/world'
 
 /** Who asks. `otherGuardian` and `suspended` are made by the test. */
@@ -18,6 +20,8 @@ export interface Fixtures {
   inHandId: string
   answeredClipId: string
   draftClipId: string
+  draftPhotoId: string
+  waitingPhotoId: string
   /** The junior's, sent to `coach2`. */
   juniorId: string
   juniorClipId: string
@@ -39,6 +43,7 @@ export interface Row {
 }
 
 const SIGNED_IN_ONLY = { nobody: 401, suspended: 401 } as const
+const PROFILE = { handedness: 'right', handicap: '', limits: '', goals: '', practicePlaces: [], sessionsPerWeek: null, minutesPerSession: null, clubs: [] }
 const TOKEN = 'A'.repeat(43)
 
 export const MATRIX: Row[] = [
@@ -64,6 +69,9 @@ export const MATRIX: Row[] = [
   { method: 'GET', route: '/api/invites/:token', path: () => `/api/invites/${TOKEN}`, expect: { others: 410 } },
   { method: 'POST', route: '/api/invites/:token/accept', path: () => `/api/invites/${TOKEN}/accept`, body: { name: 'New', password: 'a-long-enough-one', timeZone: 'Europe/London' }, expect: { others: 410 } },
   { method: 'GET', route: '/api/coaches', path: () => '/api/coaches', expect: { others: 200 } },
+  { method: 'GET', route: '/api/coaches/:slug', path: () => '/api/coaches/mara-lindqvist', expect: { others: 200 } },
+  { method: 'GET', route: '/api/profile', path: () => '/api/profile', expect: { ...SIGNED_IN_ONLY, student: 200, student2: 200, junior: 200, others: 403 } },
+  { method: 'PUT', route: '/api/profile', path: () => '/api/profile', body: PROFILE, expect: { ...SIGNED_IN_ONLY, student: 200, student2: 200, junior: 200, others: 403 } },
 
   { method: 'GET', route: '/api/offers', path: () => '/api/offers', expect: { others: 200 } },
   { method: 'GET', route: '/api/offers/:id/promise', path: it => `/api/offers/${it.offerId}/promise`, expect: { others: 200 } },
@@ -139,6 +147,27 @@ export const MATRIX: Row[] = [
     },
     expect: { ...SIGNED_IN_ONLY, student: 200, student2: 404, junior: 404, others: 403 },
   },
+  {
+    method: 'PUT', route: '/api/clips/:id/swings', path: it => `/api/clips/${it.draftClipId}/swings`,
+    body: { swings: [{ fromMs: 0, toMs: 1000, contact: 'thin', flight: null, carryM: null, surface: 'mat' }] },
+    // The student's own is still being sent.
+    expect: { ...SIGNED_IN_ONLY, student: 409, student2: 404, junior: 404, others: 403 },
+  },
+  {
+    method: 'POST', route: '/api/reviews/:id/photos', path: it => `/api/reviews/${it.draftId}/photos?kind=grip`, body: {},
+    // Its student is told that this is no form; for everybody else it does not come to that.
+    expect: { ...SIGNED_IN_ONLY, student: 400, student2: 404, junior: 404, others: 403 },
+  },
+  {
+    method: 'DELETE', route: '/api/photos/:id', path: it => `/api/photos/${it.draftPhotoId}`,
+    expect: { ...SIGNED_IN_ONLY, student: 200, student2: 404, junior: 404, others: 403 },
+    fresh: async ({ world }) => {
+      const reviewId = await startDraft(world, 'student')
+      return { path: `/api/photos/${readId((await sendPhoto(world, reviewId)).body)}` }
+    },
+  },
+  { method: 'GET', route: '/api/photos/:id/picture', path: it => `/api/photos/${it.draftPhotoId}/picture`, expect: { ...SIGNED_IN_ONLY, student: 302, others: 404 } },
+  { method: 'GET', route: '/api/photos/:id/picture', path: it => `/api/photos/${it.waitingPhotoId}/picture`, expect: { ...SIGNED_IN_ONLY, student: 302, coach: 302, coach2: 302, owner: 302, others: 404 } },
   { method: 'GET', route: '/api/clips/:id/film', path: it => `/api/clips/${it.waitingClipId}/film`, expect: { ...SIGNED_IN_ONLY, student: 302, coach: 302, coach2: 302, owner: 302, others: 404 } },
   { method: 'GET', route: '/api/clips/:id/film', path: it => `/api/clips/${it.juniorClipId}/film`, expect: { ...SIGNED_IN_ONLY, junior: 302, guardian: 302, coach2: 302, owner: 302, others: 404 } },
   { method: 'GET', route: '/api/desk/queue', path: () => '/api/desk/queue', expect: { ...SIGNED_IN_ONLY, coach: 200, coach2: 200, owner: 200, others: 403 } },
@@ -156,9 +185,13 @@ export async function makeFixtures(world: World): Promise<Fixtures> {
   const done = await answered(world, 'student2', 'coach')
   const junior = await submitted(world, 'junior', { chosenCoachId: await me('coach2') })
   const { clipId: draftClipId } = await uploadClip(world, 'student', draftId)
+  const draftPhotoId = readId((await sendPhoto(world, draftId)).body)
+  const waitingPhotoId = readId((await sendPhoto(world, draftId)).body)
+  // It can only be sent with a draft.
+  arrange(world, database => database.prepare('update photos set review_id = ? where id = ?').run(waiting.id, waitingPhotoId))
   const offers: unknown = (await call(world, 'GET', '/api/offers')).body
   return {
-    world, draftId, draftClipId, coachUserId,
+    world, draftId, draftClipId, draftPhotoId, waitingPhotoId, coachUserId,
     waitingId: waiting.id, waitingClipId: waiting.clipId,
     inHandId: inHand.id, answeredClipId: done.clipId,
     juniorId: junior.id, juniorClipId: junior.clipId,

@@ -1,8 +1,9 @@
 import { box, description, fullBox, handler, latin, lyingBox, mediaHeader, movie, trackHeader, u16, u32 } from './boxes'
+import { readMadeFilm } from './films'
 
 const TWO_TO_31 = 2 ** 31
 
-/** Files made to exhaust, block or mislead whoever reads them. None of them is a film that may be kept. */
+/** Files made to exhaust, block or mislead whoever reads them, broken ones and other things. None of them is a film that may be kept. */
 export const HOSTILE_FILMS: Record<string, () => Buffer> = {
   '2^31 frames in one entry of the time table': () => movie({ stts: fullBox('stts', u32(1, TWO_TO_31, 512)) }),
   '2^31 frames in time and size table alike': () => movie({ stts: fullBox('stts', u32(1, TWO_TO_31, 1)), stsz: fullBox('stsz', u32(10, TWO_TO_31)) }),
@@ -57,6 +58,30 @@ export const HOSTILE_FILMS: Record<string, () => Buffer> = {
   'a page under the name of a film': () => Buffer.from('<!doctype html><script>alert(1)</script>'.repeat(20)),
   'zeros': () => Buffer.alloc(5000),
   'ones': () => Buffer.alloc(5000, 0xFF),
+  'a film cut in half, its index gone': () => half(readMadeFilm('plain-30.mp4')),
+  'a film that lacks its last frames': () => readMadeFilm('faststart-30.mp4').subarray(0, -1000),
+  'a film of a phone cut in half': () => half(readMadeFilm('uneven.mov')),
+  'a film whose first kilobyte is zeros': () => Buffer.concat([Buffer.alloc(1024), readMadeFilm('faststart-30.mp4').subarray(1024)]),
+  'a film written backwards': () => Buffer.from(readMadeFilm('plain-30.mp4')).reverse(),
+  'the middle of a film': () => readMadeFilm('b-frames.mp4').subarray(2000, 8000),
+  'a photograph': () => padded([0xFF, 0xD8, 0xFF, 0xE1, 0x00, 0x10], 'Exif'),
+  'a photograph in the boxes of a film': () => Buffer.concat([box('ftyp', latin('heic'), u32(0), latin('mif1heic')), box('meta', u32(0), handler('pict')), box('mdat', Buffer.alloc(3000, 7))]),
+  'an animation': () => padded([], 'GIF89a'),
+  'an archive': () => padded([0x50, 0x4B, 0x03, 0x04], 'swing.mp4'),
+  'a document': () => padded([], '%PDF-1.7'),
+  'a recording without picture': () => padded([], 'ID3'),
+  'a film of another kind': () => Buffer.concat([latin('RIFF'), u32(0x10000000), latin('AVI LIST'), Buffer.alloc(3000, 9)]),
+  'a list that sends its reader to other addresses': () => Buffer.from('#EXTM3U\n#EXTINF:10,\nhttp://127.0.0.1:1/film.ts\nfile:///etc/hostname\n#EXT-X-ENDLIST\n'),
+  'a script of films to fetch': () => Buffer.from('ffconcat version 1.0\nfile http://127.0.0.1:1/film.mp4\nfile /etc/hostname\n'),
+}
+
+function half(film: Buffer): Buffer {
+  return film.subarray(0, film.length / 2)
+}
+
+/** What another format begins with, and nothing that means anything after it. */
+function padded(magic: number[], words: string): Buffer {
+  return Buffer.concat([Buffer.from(magic), latin(words), Buffer.alloc(3000, 0x5A)])
 }
 
 function withDescription(replaced: Buffer): Buffer {

@@ -29,6 +29,12 @@ describe('summary', () => {
     expect(told).toBe('  ✗ a.test.ts: takes away\n    expected 1 to be 2')
   })
 
+  it('shows once what vitest printed about its failures: only that says what was expected', () => {
+    const output = 'chatter\n⎯⎯⎯⎯⎯⎯⎯ Failed Tests 1 ⎯⎯⎯⎯⎯⎯⎯\n- Expected\n+ Received\n'
+    const told = stageFailures({ name: 'unit', seconds: 1, outcomes: [passed, { ...failed, message: 'not equal\n    at a.test.ts:3' }], output })
+    expect(told).toBe('  ✗ a.test.ts: takes away\n    not equal\n    ⎯⎯⎯⎯⎯⎯⎯ Failed Tests 1 ⎯⎯⎯⎯⎯⎯⎯\n    - Expected\n    + Received')
+  })
+
   it('shows the end of the output when the stage itself failed', () => {
     const output = Array.from({ length: 300 }, (_, index) => `line ${index}`).join('\n')
     const told = stageFailures({ name: 'lint', seconds: 1, outcomes: [{ ...failed, file: undefined }], output })

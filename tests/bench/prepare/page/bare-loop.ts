@@ -15,20 +15,26 @@ export interface BareFilm {
 const DECODING_MAX = 8
 const ENCODING_MAX = 4
 
-export async function readBareFilm(file: File, { facts }: OpenedClip, keep: SpanS, codec: string): Promise<BareFilm> {
-  const plan = planKeep(facts.frameTimesS, [keep], facts.durationMs / 1000)
+/** The same packets, bits and key frames as preparing takes. */
+export async function readBareFilm(file: File, { facts }: OpenedClip, keep: SpanS[], codec: string): Promise<BareFilm> {
+  const plan = planKeep(facts.frameTimesS, keep, facts.durationMs / 1000)
   const input = new Input({ source: new BlobSource(file), formats: [MP4] })
   const track = await input.getPrimaryVideoTrack()
   const decoder = await track?.getDecoderConfig()
   if (!track || !decoder) throw new Error('The clip cannot be read.')
   const sink = new EncodedPacketSink(track)
-  const start = await sink.getKeyPacket(plan.frames[0]?.oldS ?? 0) ?? undefined
+  const isKeyAt = new Map(plan.frames.map(frame => [Math.round(frame.oldS * facts.timeBase), frame.isKey]))
   const chunks: EncodedVideoChunk[] = []
-  const endS = plan.frames.at(-1)?.oldS ?? 0
-  for await (const packet of sink.packets(start)) {
-    chunks.push(packet.toEncodedVideoChunk())
-    // In the demo's clips every frame leans on earlier ones alone.
-    if (packet.timestamp >= endS) break
+  const keys = new Map<number, boolean>()
+  for (const { oldS: [firstS, lastS] } of plan.spans) {
+    const start = await sink.getKeyPacket(firstS) ?? undefined
+    for await (const packet of sink.packets(start)) {
+      chunks.push(packet.toEncodedVideoChunk())
+      const isKey = isKeyAt.get(Math.round(packet.timestamp * facts.timeBase))
+      if (isKey !== undefined) keys.set(packet.microsecondTimestamp, isKey)
+      // In the demo's clips every frame leans on earlier ones alone.
+      if (packet.timestamp >= lastS) break
+    }
   }
   input.dispose()
   const { widthPx, heightPx, framesPerSecond } = facts
@@ -37,7 +43,7 @@ export async function readBareFilm(file: File, { facts }: OpenedClip, keep: Span
     chunks,
     decoder,
     encoder: { codec, width: widthPx, height: heightPx, bitrate, bitrateMode: 'variable', latencyMode: 'quality', framerate: framesPerSecond, avc: { format: 'avc' } },
-    keys: new Map(plan.frames.map(frame => [Math.round(frame.oldS * 1e6), frame.isKey])),
+    keys,
   }
 }
 

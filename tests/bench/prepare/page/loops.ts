@@ -2,10 +2,10 @@ import type { OpenedClip, SpanS } from '~/film/prepare'
 import { forgetPrepared, openClip, prepareClip } from '~/film/prepare'
 import { bareLoop, readBareFilm } from './bare-loop'
 
-/** One of the demo's clips, and a stretch of it that does not begin at a key frame: it must be decoded and encoded. */
+/** One of the demo's clips, and the swings kept of it, which do not begin at key frames: it must be decoded and encoded. */
 export interface Work {
   path: string
-  keep: SpanS
+  keep: SpanS[]
 }
 
 /** Frames a second of each way over the same frames. */
@@ -24,7 +24,7 @@ async function measure({ path, keep }: Work, isBareFirst: boolean): Promise<Rate
   const bareFilm = await readBareFilm(file, clip, keep, codecString)
   const prepare = async () => {
     const startMs = performance.now()
-    const prepared = await prepareClip(clip, { keep: [keep] })
+    const prepared = await prepareClip(clip, { keep })
     const seconds = (performance.now() - startMs) / 1000
     await forgetPrepared(prepared)
     return { rate: prepared.frames / seconds, frames: prepared.frames, way: prepared.way }
@@ -43,7 +43,7 @@ async function measure({ path, keep }: Work, isBareFirst: boolean): Promise<Rate
 }
 
 /** What the prepared film is encoded as, so that the bare loop asks the same of the same encoder. */
-async function findCodecString(clip: OpenedClip, [fromS]: SpanS): Promise<string> {
+async function findCodecString(clip: OpenedClip, [[fromS] = [0, 0]]: SpanS[]): Promise<string> {
   const prepared = await prepareClip(clip, { keep: [[fromS, fromS + 0.1]] })
   const made = await openClip(prepared.file)
   made.close()

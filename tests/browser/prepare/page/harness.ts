@@ -2,6 +2,7 @@ import type { ClipFacts, FrameFacts, OpenedClip, PreparedClip, Progress, SpanS }
 import { ClipProblem, explainWay, findClipProblem, forgetPrepared, openClip, prepareClip, readFrameFacts, showFrame, suggestSwings } from '~/film/prepare'
 import { encodeBase64 } from './base64'
 import { bestOffsets } from './compare'
+import { drawFilm } from './draw-film'
 import { holdsSamePackets } from './packets'
 
 /** What the page did with a clip, as far as it can cross to the test. */
@@ -44,6 +45,17 @@ const harness = {
     await Promise.all([forgetPrepared(first), forgetPrepared(second)])
     return { first, second, isSameBytes }
   }),
+
+  /** Prepares a film drawn for it, and gives the size of what came out. */
+  async prepareDrawn(widthPx: number, heightPx: number, frameCount: number) {
+    const clip = await openClip(await drawFilm(widthPx, heightPx, frameCount))
+    const { file, ...prepared } = await prepareClip(clip, { keep: [] })
+    clip.close()
+    const made = await openClip(file)
+    made.close()
+    await forgetPrepared(prepared)
+    return { ...prepared, size: [made.facts.widthPx, made.facts.heightPx] }
+  },
 
   /** The reason why preparing was refused. */
   refuse: (path: string, keep: SpanS[]): Promise<string | undefined> => withClip(path, async (clip) => {
