@@ -21,6 +21,8 @@ import type { Settings } from './settings'
 export interface App {
   settings: Settings
   db: Database
+  /** See `OpenDatabase`. */
+  writeCount(): number
   clock: Clock
   storage: FilmStorage
   payments: Payments
@@ -38,12 +40,13 @@ export interface App {
  * @throws when a file cannot be opened.
  */
 export function createApp(settings: Settings): App {
-  const { db, close: closeDatabase } = openDatabase(settings.databasePath)
+  const { db, writeCount, close: closeDatabase } = openDatabase(settings.databasePath)
   const limits = openLimits(settings.limitsDatabasePath, settings.limitsFactor)
   const mail = createMailer({ smtpUrl: settings.mail.smtpUrl, from: settings.mail.from })
   const app: App = {
     settings,
     db,
+    writeCount,
     clock: createClock(settings.clockOffsetFile),
     storage: createStorage(settings.storage),
     payments: createPayments(settings.payments),

@@ -12,7 +12,7 @@ export interface ViewerFacts {
 }
 
 /** What a service gets: the outside world, the moment, and who asks. `viewer` is undefined for a visitor. */
-export interface Ctx extends Pick<App, 'db' | 'storage' | 'payments' | 'mail' | 'limits' | 'log' | 'settings'> {
+export interface Ctx extends Pick<App, 'db' | 'writeCount' | 'storage' | 'payments' | 'mail' | 'limits' | 'log' | 'settings'> {
   viewer: ViewerFacts | undefined
   nowMs: number
   requestId: string
@@ -34,9 +34,9 @@ export function jobContext(app: App, name: string): Ctx {
 }
 
 export function contextOf(app: App, request: Pick<Ctx, 'viewer' | 'requestId' | 'repeatable'>): Ctx {
-  const { db, storage, payments, mail, limits, log, settings, clock, jobs } = app
+  const { db, writeCount, storage, payments, mail, limits, log, settings, clock, jobs } = app
   return {
-    db, storage, payments, mail, limits, log, settings,
+    db, writeCount, storage, payments, mail, limits, log, settings,
     nowMs: clock.nowMs(),
     pokesAfterWrite: new Set(),
     poke: job => jobs.poke(job),

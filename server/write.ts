@@ -24,32 +24,29 @@ export class AlreadyDone extends Error {
 export async function write<T>(ctx: Ctx, work: (db: Database) => Promise<T>): Promise<T> {
   const answer = await inTransaction(ctx.db, async (db) => {
     const { repeatable } = ctx
-    if (repeatable) await claimKey(db, repeatable, ctx.nowMs)
+    // Asked first, since the work of a second one would find a moment that is no longer right.
+    if (repeatable && await findDone(db, repeatable)) throw new AlreadyDone()
     const result = await work(db)
-    if (repeatable) {
-      await db.updateTable('idempotency_keys')
-        .set({ answer: JSON.stringify(result ?? null) })
-        .where('scope', '=', repeatable.scope).where('key', '=', repeatable.key)
-        .execute()
-    }
+    if (repeatable) await insertDone(db, repeatable, JSON.stringify(result ?? null), ctx.nowMs)
     return result
   })
   pokeJobs(ctx)
   return answer
 }
 
+/** Key and answer in one row, in the commit of the change itself. */
+async function insertDone(db: Database, { scope, key, requestHash }: RepeatableRequest, answer: string, nowMs: number): Promise<void> {
+  const done = await db.insertInto('idempotency_keys')
+    .values({ scope, key, request_hash: requestHash, answer, created_at_ms: nowMs })
+    .onConflict(conflict => conflict.doNothing())
+    .executeTakeFirst()
+  if (done.numInsertedOrUpdatedRows === 0n) throw new AlreadyDone()
+}
+
 /** Wakes the jobs that a committed change asked for. */
 export function pokeJobs(ctx: Ctx): void {
   ctx.pokesAfterWrite.forEach(job => ctx.poke(job))
   ctx.pokesAfterWrite.clear()
-}
-
-async function claimKey(db: Database, { scope, key, requestHash }: RepeatableRequest, nowMs: number): Promise<void> {
-  const claimed = await db.insertInto('idempotency_keys')
-    .values({ scope, key, request_hash: requestHash, created_at_ms: nowMs })
-    .onConflict(conflict => conflict.doNothing())
-    .executeTakeFirst()
-  if (claimed.numInsertedOrUpdatedRows === 0n) throw new AlreadyDone()
 }
 
 export async function findDone(db: Database, request: RepeatableRequest): Promise<{ request_hash: string, answer: string } | undefined> {

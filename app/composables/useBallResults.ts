@@ -49,6 +49,12 @@ export function useBallResults(reviewId: MaybeRefOrGetter<string>, view: ClipVie
     put(swings.value.map(swing => ({ ...swing, ...change })))
   }
 
+  /** Brings what was tapped last to the studio. False when it could not be reached; what it refuses for good does not hold a review up. */
+  async function flush(): Promise<boolean> {
+    await autosave.flush()
+    return autosave.problem.value?.isPassing !== true
+  }
+
   /** The clip was taken away, or another one comes in its place. */
   function forget() {
     autosave.settle()
@@ -65,7 +71,7 @@ export function useBallResults(reviewId: MaybeRefOrGetter<string>, view: ClipVie
     if (state === 'accepted' && hasSaid && findKeptSwings(toValue(reviewId), view) !== undefined) autosave.touch()
   })
 
-  return { swings, begin, change, changeAll, forget, recall, state: autosave.state, problem: autosave.problem }
+  return { swings, begin, change, changeAll, forget, recall, flush, state: autosave.state, problem: autosave.problem }
 }
 
 function withoutId({ fromMs, toMs, contact, flight, carryM, surface }: SwingInput): SwingInput {

@@ -1,6 +1,7 @@
 import type { MaybeRefOrGetter } from 'vue'
 import type { FilmContext } from '#shared/domain/film/advice/context'
 import type { ClipView } from '#shared/types/reviews'
+import { forgetPrepared } from '~/film/prepare/device-storage'
 import { forgetFilm, keepFilm, listKeptFilm, type KeptFilm } from '~/film/kept/kept-film'
 import { forgetQuestion } from '~/utils/kept-question'
 import { findKeptSwings, forgetSwings, keepSwings } from '~/utils/kept-swings'
@@ -30,7 +31,9 @@ export function useFilmStep(review: ReturnType<typeof useNewReview>, clips: Retu
     if (clips.clipOf(view) !== undefined || clips.uploadOf(view) !== undefined) await remove(view)
     if (clips.problem.value !== undefined) return clips.problem.value
     parts[view].balls.begin(spans)
-    void clips.store.send(id, view, made.file)
+    void clips.store.send(id, view, made.file, toldOf(made)).then(async () => {
+      if (clips.uploadOf(view)?.phase === 'done') await forgetPrepared(made)
+    })
     return ''
   }
 
@@ -42,7 +45,9 @@ export function useFilmStep(review: ReturnType<typeof useNewReview>, clips: Retu
       return NOT_KEPT
     }
     parts[made.view].balls.begin(made.spans)
-    kept.value = { ...kept.value, [made.view]: made }
+    // From where it lies now: the copy that it was made into goes.
+    await recall()
+    await forgetPrepared(made)
     review.touch()
     return ''
   }
@@ -77,13 +82,24 @@ export function useFilmStep(review: ReturnType<typeof useNewReview>, clips: Retu
       forgetSwings(BEFORE_ACCOUNT, view)
     }
     forgetQuestion()
-    for (const { view, file } of found) {
-      void clips.store.send(id, view, file).then(async () => {
+    for (const { view, file, ...about } of found) {
+      void clips.store.send(id, view, file, toldOf(about)).then(async () => {
         if (clips.uploadOf(view)?.phase === 'done') await forgetFilm(view)
       })
     }
     return true
   }
 
-  return { parts, kept, remove, recall, takeOver }
+  /** True when the studio has all that was said of the balls. */
+  async function flush(): Promise<boolean> {
+    const all = await Promise.all(VIEWS.map(view => parts[view].balls.flush()))
+    return all.every(Boolean)
+  }
+
+  return { parts, kept, remove, recall, takeOver, flush }
+}
+
+/** What goes with the file; a rate that is not known is not told. */
+function toldOf({ preparedAs, captureFramesPerSecond }: Pick<KeptFilm, 'preparedAs' | 'captureFramesPerSecond'>) {
+  return { preparedAs, ...captureFramesPerSecond === undefined ? {} : { captureFramesPerSecond } }
 }

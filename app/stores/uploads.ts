@@ -1,6 +1,6 @@
 import { computed, ref, watch } from 'vue'
 import { defineStore } from 'pinia'
-import type { ClipBrief, ClipUpload, ClipView, PartsAnswer } from '#shared/types/reviews'
+import type { ClipBrief, ClipUpload, ClipView, PartsAnswer, PreparedAs } from '#shared/types/reviews'
 import { findFilmContentType } from '~/film/upload/content-type'
 import { putPart } from '~/film/upload/put-part'
 import { explainFailure, NotFilm, readFailure, type FailureWords } from '~/film/upload/explain'
@@ -26,11 +26,15 @@ export interface ClipOnItsWay {
   problem: FailureWords | undefined
 }
 
+/** What preparing a file took out of it, told beside it. */
+export type ToldOfClip = Partial<Record<'captureFramesPerSecond', number> & Record<'preparedAs', PreparedAs>>
+
 /** Films being sent. They outlive the page they were chosen on: the person may read on elsewhere meanwhile. */
 export const useUploadsStore = defineStore('uploads', () => {
   const bySlot = ref<Record<string, ClipOnItsWay>>({})
   // Files and controllers are no state that could be drawn or carried from the server, so they stay outside it.
   const files = new Map<string, File>()
+  const told = new Map<string, ToldOfClip>()
   const controllers = new Map<string, AbortController>()
 
   const isSending = computed(() => Object.values(bySlot.value).some(isUnderWay))
@@ -45,11 +49,12 @@ export const useUploadsStore = defineStore('uploads', () => {
   }
 
   /** Sends a newly chosen file as the clip of this view. */
-  async function send(reviewId: string, view: ClipView, file: File): Promise<void> {
+  async function send(reviewId: string, view: ClipView, file: File, about: ToldOfClip = {}): Promise<void> {
+    told.set(slotOf(reviewId, view), about)
     await run(reviewId, view, file, undefined, async (slot, signal) => {
       const contentType = findFilmContentType(file.name, file.type)
       if (contentType === undefined) throw new NotFilm()
-      const body = { view, fileName: file.name, bytes: file.size, contentType }
+      const body = { view, fileName: file.name, bytes: file.size, contentType, ...about }
       const answer = await patiently(headers => $fetch<ClipUpload>(`/api/reviews/${reviewId}/clips`, { method: 'POST', headers, body }), signal)
       put(slot, { clip: answer.clip })
       return { clipId: answer.clip.id, plan: { fileBytes: file.size, partBytes: answer.partBytes, parts: answer.parts, doneNumbers: [] } }
@@ -71,7 +76,7 @@ export const useUploadsStore = defineStore('uploads', () => {
     const file = files.get(slotOf(reviewId, view))
     const clip = find(reviewId, view)?.clip
     if (file === undefined) return
-    if (clip === undefined) await send(reviewId, view, file)
+    if (clip === undefined) await send(reviewId, view, file, told.get(slotOf(reviewId, view)))
     else await goOn(reviewId, clip, file)
   }
 

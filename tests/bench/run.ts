@@ -1,6 +1,6 @@
 import { mkdirSync, writeFileSync } from 'node:fs'
 import { availableParallelism, loadavg } from 'node:os'
-import { api, prepare } from './api'
+import { api } from './api'
 import type { Bench } from './bench'
 import { tableOf } from './bench'
 import { prepare } from './prepare'

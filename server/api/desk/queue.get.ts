@@ -1,11 +1,12 @@
-import type { QueueAnswer } from '#shared/types/reviews'
+import { send } from 'h3'
 import { queueQuery } from '#shared/schemas/reviews'
-import { readQueue } from '#server/features/reviews/queue.service'
+import { readKeptQueue } from '#server/features/reviews/kept-queue'
 import { answer } from '#server/utils/answer'
 import { signedIn } from '#server/utils/guards'
 import { readQuery } from '#server/utils/input'
 
-export default defineEventHandler(event => answer(event, async (): Promise<QueueAnswer> => {
+/** Answers a `QueueAnswer`, already written as JSON. */
+export default defineEventHandler(event => answer(event, async (): Promise<void> => {
   const ctx = await signedIn(event, 'coach', 'owner')
-  return readQueue(ctx, readQuery(event, queueQuery))
+  await send(event, await readKeptQueue(ctx, readQuery(event, queueQuery)), 'application/json')
 }))

@@ -33,15 +33,15 @@ export const turnaround: Migration = {
     create index turnarounds_open on turnarounds (promised_at_ms, id) where status <> 'stopped';
 
     create table turnaround_events (
-      id text primary key,
+      id text not null,
       turnaround_id text not null,
       kind text not null check (kind in ('started', 'paused', 'resumed', 'stopped', 'missed', 'coach-changed')),
       at_ms integer not null,
       calendar_id text not null references calendars,
       promised_at_ms integer not null,
-      actor_id text
-    ) strict;
-    create index turnaround_events_by_turnaround on turnaround_events (turnaround_id, at_ms, id);
+      actor_id text,
+      primary key (turnaround_id, at_ms, id)
+    ) strict, without rowid;
     ${addedToOnly('turnaround_events')}
   `),
 }

@@ -32,6 +32,7 @@ export const film: Migration = {
       create index clips_unread on clips (read_due_at_ms) where state = 'reading';
 
       alter table uploads add column completion_asked_at_ms integer;
+      create index uploads_by_store_id on uploads (store_upload_id);
       create index uploads_asked on uploads (completion_asked_at_ms) where completion_asked_at_ms is not null;
 
       create table swings (
@@ -61,7 +62,7 @@ export const film: Migration = {
         bytes integer not null check (bytes > 0),
         created_at_ms integer not null
       ) strict;
-      create index photos_by_review on photos (review_id, created_at_ms);
+      create index photos_by_review on photos (review_id, created_at_ms, id);
     `)
     await insertImpliedSwings(db)
   },

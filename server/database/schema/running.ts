@@ -41,7 +41,7 @@ export interface IdempotencyKeysTable {
   scope: string
   key: string
   request_hash: string
-  answer: Generated<string>
+  answer: string
   created_at_ms: number
 }
 

@@ -9,13 +9,12 @@ export async function listSwings(db: Database, clipId: string): Promise<SwingRow
   return db.selectFrom('swings').selectAll().where('clip_id', '=', clipId).orderBy('number').execute()
 }
 
-/** The swings of all clips of a review, by clip and number. */
+/** The swings of all clips of a review, in no order. */
 export async function listSwingsOfReview(db: Database, reviewId: string): Promise<SwingRow[]> {
   return db.selectFrom('swings')
     .innerJoin('clips', 'clips.id', 'swings.clip_id')
     .selectAll('swings')
     .where('clips.review_id', '=', reviewId)
-    .orderBy('swings.clip_id').orderBy('swings.number')
     .execute()
 }
 

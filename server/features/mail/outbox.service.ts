@@ -1,5 +1,6 @@
 import type { Ctx } from '#server/context'
 import type { Database } from '#server/database/client'
+import { inTransaction } from '#server/database/transaction'
 import { newId } from '#server/ids'
 import { composeLetter } from './compose'
 import type { LetterName } from './letters'
@@ -50,30 +51,39 @@ export async function queueLetter(db: Database, ctx: Ctx, letter: QueuedLetter):
   ctx.pokesAfterWrite.add('mail:send')
 }
 
-/** A letter that cannot be written, through a fault of ours, must not keep the others back. */
-async function setAside(ctx: Ctx, row: OutboxRow, error: unknown): Promise<void> {
-  ctx.log.error({ outboxId: row.id, letter: row.letter, err: error }, 'letter not written')
-  await markForLater(ctx.db, row.id, row.attempts, ctx.nowMs + 15 * MINUTE_MS, 'It could not be written.')
-}
+/** What came of a letter, to be written down with that of the others. */
+type Outcome = (db: Database) => Promise<void>
 
 /** Sends what is due, oldest first. A letter whose sending is cut short is sent again later with the same Message-ID. */
 export async function sendDueLetters(ctx: Ctx): Promise<void> {
   for (;;) {
     const due = await claimDueLetters(ctx.db, ctx.nowMs, BATCH, LEASE_MS)
-    await Promise.all(due.map(row => sendOne(ctx, row).catch(error => setAside(ctx, row, error))))
+    const outcomes = await Promise.all(due.map(row => sendOne(ctx, row).catch(error => setAside(ctx, row, error))))
+    // One commit for the batch: letters must not keep answers waiting for the disk.
+    if (outcomes.length > 0) {
+      await inTransaction(ctx.db, async (db) => {
+        for (const outcome of outcomes) await outcome(db)
+      })
+    }
     if (due.length < BATCH) return
   }
 }
 
-async function sendOne(ctx: Ctx, row: OutboxRow): Promise<void> {
+async function sendOne(ctx: Ctx, row: OutboxRow): Promise<Outcome> {
   const attempts = row.attempts + 1
-  if (row.expires_at_ms !== null && row.expires_at_ms <= ctx.nowMs) return markGivenUp(ctx.db, row.id, row.attempts, 'The link in it ran out.')
+  if (row.expires_at_ms !== null && row.expires_at_ms <= ctx.nowMs) return db => markGivenUp(db, row.id, row.attempts, 'The link in it ran out.')
   const composed = await composeLetter(ctx, row)
-  if (!composed) return markGivenUp(ctx.db, row.id, row.attempts, 'What it speaks of is gone.')
+  if (!composed) return db => markGivenUp(db, row.id, row.attempts, 'What it speaks of is gone.')
   const result = await ctx.mail.send({ ...composed, messageId: row.message_id, date: new Date(row.created_at_ms) })
-  if (result.kind === 'sent') return markSent(ctx.db, row.id, ctx.nowMs)
+  if (result.kind === 'sent') return db => markSent(db, row.id, ctx.nowMs)
   ctx.log.warn({ outboxId: row.id, letter: row.letter, attempts, reason: result.reason }, 'letter not taken')
   const waitMs = BACK_OFF_MS[attempts - 1]
-  if (result.kind === 'refused-for-good' || waitMs === undefined) return markGivenUp(ctx.db, row.id, attempts, result.reason)
-  return markForLater(ctx.db, row.id, attempts, ctx.nowMs + waitMs, result.reason)
+  if (result.kind === 'refused-for-good' || waitMs === undefined) return db => markGivenUp(db, row.id, attempts, result.reason)
+  return db => markForLater(db, row.id, attempts, ctx.nowMs + waitMs, result.reason)
+}
+
+/** A letter that cannot be written, through a fault of ours, must not keep the others back. */
+function setAside(ctx: Ctx, row: OutboxRow, error: unknown): Outcome {
+  ctx.log.error({ outboxId: row.id, letter: row.letter, err: error }, 'letter not written')
+  return db => markForLater(db, row.id, row.attempts, ctx.nowMs + 15 * MINUTE_MS, 'It could not be written.')
 }

@@ -7,8 +7,16 @@ import { visibleTo } from './review.policy'
 
 export type ClipRow = Selectable<ClipsTable>
 
-export async function listClips(db: Database, reviewId: string): Promise<ClipRow[]> {
-  return db.selectFrom('clips').selectAll().where('review_id', '=', reviewId).orderBy('created_at_ms').orderBy('id').execute()
+/** All of a clip but its frame times, which are long and which no list shows. */
+const BRIEF_COLUMNS = [
+  'id', 'review_id', 'view', 'state', 'file_name', 'bytes', 'refusal', 'width_px', 'height_px', 'duration_ms', 'frames_per_second',
+  'capture_frames_per_second', 'prepared_as', 'created_at_ms',
+] as const satisfies readonly (keyof ClipRow)[]
+
+export type ClipBriefRow = Pick<ClipRow, typeof BRIEF_COLUMNS[number]>
+
+export async function listClips(db: Database, reviewId: string): Promise<ClipBriefRow[]> {
+  return db.selectFrom('clips').select(BRIEF_COLUMNS).where('review_id', '=', reviewId).orderBy('created_at_ms').orderBy('id').execute()
 }
 
 /** A clip of a review that the viewer may see, with what access rules ask about the review. */

@@ -9,6 +9,8 @@ function selectReviews(db: Database) {
   return db.selectFrom('reviews')
     .innerJoin('users as student', 'student.id', 'reviews.student_id')
     .innerJoin('students', 'students.user_id', 'reviews.student_id')
+    // One row: who counts as a junior is the studio's setting.
+    .innerJoin('studio', join => join.on('studio.id', '=', 1))
     .leftJoin('users as coach', 'coach.id', 'reviews.coach_id')
     .leftJoin('users as chosen', 'chosen.id', 'reviews.chosen_coach_id')
     .selectAll('reviews')
@@ -19,6 +21,7 @@ function selectReviews(db: Database) {
       'students.birth_date',
       'students.handedness',
       'students.limits',
+      'studio.adult_age',
       'coach.name as coach_name',
       'coach.picture_key as coach_picture_key',
       'chosen.name as chosen_name',

@@ -6,13 +6,12 @@ import type { SignedInCtx } from '#server/context'
 import type { Database } from '#server/database/client'
 import type { SwingRow } from '#server/features/film/swing.repository'
 import { listSwings, listSwingsOfReview } from '#server/features/film/swing.repository'
-import { getStudio } from '#server/features/people/studio.repository'
 import { listPhotos } from '#server/features/photos/photo.repository'
 import { viewPhoto } from '#server/features/photos/photo.view'
 import type { TurnaroundRow } from '#server/features/turnaround/turnaround.repository'
 import { findTurnaround } from '#server/features/turnaround/turnaround.repository'
 import { readTimeInHandMs } from '#server/features/turnaround/turnaround.service'
-import type { ClipRow } from './clip.repository'
+import type { ClipBriefRow } from './clip.repository'
 import { listClips } from './clip.repository'
 import type { LetterRecord } from './letter.repository'
 import { findLetter, toLetter } from './letter.repository'
@@ -21,13 +20,12 @@ import type { ReviewRecord } from './review.repository'
 
 /** A review as one reader sees it. `record` must have been found for that reader. */
 export async function viewReview(db: Database, ctx: SignedInCtx, record: ReviewRecord): Promise<ReviewView> {
-  const [clips, swings, photos, turnaround, letter, studio] = [
+  const [clips, swings, photos, turnaround, letter] = [
     await listClips(db, record.id),
     await listSwingsOfReview(db, record.id),
     await listPhotos(db, record.id),
     await findTurnaround(db, record.id, 'answer'),
     record.answered_at_ms === null ? undefined : await findLetter(db, record.id),
-    await getStudio(db),
   ]
   const facts = reviewFacts(record)
   return {
@@ -39,7 +37,7 @@ export async function viewReview(db: Database, ctx: SignedInCtx, record: ReviewR
       id: record.student_id,
       name: record.student_name,
       hasPicture: record.student_picture_key !== null,
-      isJunior: ageInYears(record.birth_date, ctx.nowMs, record.student_time_zone) < studio.adult_age,
+      isJunior: ageInYears(record.birth_date, ctx.nowMs, record.student_time_zone) < record.adult_age,
     },
     coach: person(record.coach_id, record.coach_name, record.coach_picture_key),
     chosenCoach: person(record.chosen_coach_id, record.chosen_name, record.chosen_picture_key),
@@ -70,11 +68,11 @@ export function reviewFacts(record: ReviewRecord): ReviewFacts {
 }
 
 /** A clip with the swings that are told of it now. */
-export async function viewClipWithSwings(db: Database, row: ClipRow): Promise<ClipBrief> {
+export async function viewClipWithSwings(db: Database, row: ClipBriefRow): Promise<ClipBrief> {
   return viewClip(row, await listSwings(db, row.id))
 }
 
-function viewClip(row: ClipRow, swings: SwingRow[]): ClipBrief {
+function viewClip(row: ClipBriefRow, swings: SwingRow[]): ClipBrief {
   return {
     id: row.id,
     view: row.view,
@@ -88,7 +86,7 @@ function viewClip(row: ClipRow, swings: SwingRow[]): ClipBrief {
     framesPerSecond: row.frames_per_second,
     captureFramesPerSecond: row.capture_frames_per_second,
     preparedAs: row.prepared_as,
-    swings: swings.map(viewSwing),
+    swings: swings.map(viewSwing).sort((a, b) => a.number - b.number),
     createdAtMs: row.created_at_ms,
   }
 }

@@ -20,7 +20,7 @@ const MAX_UNSEALED = 5000
  * at every request.
  */
 export async function findSessionId(event: H3Event): Promise<string | undefined> {
-  const sealed = getCookie(event, cookieName(event))
+  const sealed = getCookie(event, cookieName())
   if (!sealed) return undefined
   const known = unsealed.get(sealed)
   if (known) return known
@@ -36,9 +36,10 @@ export async function giveSessionCookie(event: H3Event, sessionId: string): Prom
 }
 
 export async function takeSessionCookie(event: H3Event): Promise<void> {
-  if (getCookie(event, cookieName(event))) await clearUserSession(event)
+  if (getCookie(event, cookieName())) await clearUserSession(event)
 }
 
-function cookieName(event: H3Event): string {
-  return useRuntimeConfig(event).session.name ?? 'nuxt-session'
+/** Without the event on purpose: with it the whole configuration is copied at every request. */
+function cookieName(): string {
+  return useRuntimeConfig().session.name ?? 'nuxt-session'
 }

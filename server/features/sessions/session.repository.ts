@@ -8,7 +8,7 @@ export interface SessionViewerRow {
 }
 
 /** The person behind a live session; a suspended one has none. */
-export async function findSessionViewer(db: Database, sessionId: string, nowMs: number): Promise<SessionViewerRow | undefined> {
+function sessionViewerQuery(db: Database, sessionId: string, nowMs: number) {
   return db.selectFrom('sessions')
     .innerJoin('users', 'users.id', 'sessions.user_id')
     .leftJoin('coaches', 'coaches.user_id', 'users.id')
@@ -16,7 +16,19 @@ export async function findSessionViewer(db: Database, sessionId: string, nowMs: 
     .where('sessions.id', '=', sessionId)
     .where('sessions.expires_at_ms', '>', nowMs)
     .where('users.suspended_at_ms', 'is', null)
-    .executeTakeFirst()
+}
+
+/** Every request asks this, so its SQL is written once. The parameters stand in the order of the query above. */
+let compiled: ReturnType<typeof compileSessionViewer> | undefined
+
+function compileSessionViewer(db: Database) {
+  return sessionViewerQuery(db, '', 0).compile()
+}
+
+export async function findSessionViewer(db: Database, sessionId: string, nowMs: number): Promise<SessionViewerRow | undefined> {
+  compiled ??= compileSessionViewer(db)
+  const { rows } = await db.executeQuery<SessionViewerRow>({ ...compiled, parameters: [sessionId, nowMs] })
+  return rows[0]
 }
 
 export async function insertSession(db: Database, row: { id: string, userId: string, nowMs: number, expiresAtMs: number }): Promise<void> {

@@ -1,3 +1,4 @@
+import AxeBuilder from '@axe-core/playwright'
 import type { Page } from '@playwright/test'
 import { DEMO_PASSWORD } from '#fakes/demo/people'
 import { arrange } from '#tests/support/arrange'
@@ -28,6 +29,7 @@ async function typeQuestion(page: Page, title: string): Promise<void> {
 async function film(page: Page): Promise<void> {
   await page.getByLabel('Film or choose a clip, Face-on').setInputFiles(FILM)
   await expect(page.getByText('The brackets hold what your coach gets.')).toBeVisible({ timeout: 30_000 })
+  await expectAccessible(page)
   await page.getByRole('button', { name: /^Keep th/ }).click()
 }
 
@@ -44,6 +46,11 @@ async function confirmUrl(world: World, email: string): Promise<string> {
   return await linkOf() ?? ''
 }
 
+async function expectAccessible(page: Page): Promise<void> {
+  const { violations } = await new AxeBuilder({ page }).analyze()
+  expect(violations.map(({ id, nodes }) => `${id}: ${nodes.map(node => node.html).join(' ')}`)).toEqual([])
+}
+
 const wide = (page: Page) => page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
 
 test('[film.4] from a coach’s own link to paid by card, with the account in between', async ({ browser, world, complaints }) => {
@@ -52,21 +59,23 @@ test('[film.4] from a coach’s own link to paid by card, with the account in be
   const context = await browser.newContext({ viewport: PHONE, baseURL: world.url, timezoneId: 'Europe/London' })
   const page = await context.newPage()
   await page.goto('/with/mara-lindqvist')
-  await expect(page.getByText('Ask Mara Lindqvist')).toBeVisible()
+  await expect(page.getByText('Ask Mara Lindqvist', { exact: true })).toBeVisible()
   await typeQuestion(page, 'Low and left')
   await film(page)
   await expect(page.getByText('It waits in this browser')).toBeVisible({ timeout: 60_000 })
-  await page.getByRole('group', { name: 'Swing 1' }).getByText('Thin').click()
-  await page.getByText('Mat', { exact: true }).click()
+  await page.getByRole('group', { name: 'Swing 1' }).getByRole('radio', { name: 'Thin' }).check()
+  await page.getByRole('radio', { name: 'Mat' }).check()
 
   // Nothing is lost when the page is closed before there is an account.
   await page.goto('/with/mara-lindqvist?step=film')
   await expect(page.getByText('It waits in this browser')).toBeVisible()
   await expect(page.getByRole('group', { name: 'Swing 1' }).getByRole('radio', { name: 'Thin' })).toBeChecked()
   expect(await wide(page)).toBeLessThanOrEqual(0)
+  await expectAccessible(page)
 
   await goToSending(page)
   await expect(page.getByText('Answered by')).toBeVisible()
+  await expectAccessible(page)
   await page.getByLabel('Your name').fill('Nora Adeyemi')
   await page.getByLabel('E-mail').fill(email)
   await page.getByLabel('Password', { exact: true }).fill('three words apart')
@@ -80,6 +89,7 @@ test('[film.4] from a coach’s own link to paid by card, with the account in be
   await expect(second).toHaveURL(/\/reviews\/new\?.*draft=/, { timeout: 20_000 })
   const pay = second.getByRole('button', { name: 'Pay £45 by card' })
   await expect(pay).toBeEnabled({ timeout: 60_000 })
+  await expectAccessible(second)
   await pay.click()
   await second.getByRole('button', { name: 'Pay £45.00' }).click()
   await expect(second.getByText('Paid.')).toBeVisible({ timeout: 20_000 })
@@ -105,6 +115,7 @@ test('[film.4] a declined card loses nothing, and the same review is paid afterw
   await typeQuestion(page, 'A card that is declined')
   await film(page)
   await expect(page.getByText('Taken.')).toBeVisible({ timeout: 60_000 })
+  await expectAccessible(page)
   await goToSending(page)
   await page.getByRole('radio', { name: /^Pay £45 by card/ }).check()
   await page.getByRole('button', { name: 'Pay £45 by card' }).click()

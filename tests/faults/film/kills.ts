@@ -17,8 +17,8 @@ const SENDERS = 4
 const WORLD_INDEX = 47
 const SEED = 20_260_519
 /** Between two kills, at random: a clip takes about that long from its beginning to its end. */
-const LEAST_MS = 50
-const MOST_MS = 500
+const LEAST_MS = 200
+const MOST_MS = 1500
 const MINUTE_MS = 60_000
 const HOUR_MS = 60 * MINUTE_MS
 
@@ -85,7 +85,7 @@ export async function sendThroughKills(world: World, kills: number, tell: (line:
   const before = await mismatches(world)
   tell(`${counts.begun} clips begun through ${kills} kills; ${before.length} things did not fit together right after the last`)
   await letADayGoBy(world)
-  return [...counts.completed === 0 ? ['No clip was read: the load was too thin to say anything.'] : [], ...await mismatches(world), ...await unfinished(world)]
+  return [...counts.begun < kills || counts.completed === 0 ? ['Fewer clips than kills, or none read: the load was too thin to say anything.'] : [], ...await mismatches(world), ...await unfinished(world)]
 }
 
 /** One clip, and at random a photograph beside it, or giving it up: begun, sent, completed, any of which a kill may cut off. */

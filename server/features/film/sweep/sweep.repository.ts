@@ -10,7 +10,7 @@ export async function listAbandonedClips(db: Database, beforeMs: number, limit: 
     .select(['uploads.store_upload_id', 'reviews.state as review_state'])
     .where('uploads.created_at_ms', '<', beforeMs)
     .where('clips.state', '=', 'uploading')
-    .orderBy('uploads.created_at_ms').orderBy('uploads.clip_id')
+    .orderBy('uploads.created_at_ms')
     .limit(limit)
     .execute()
 }

@@ -21,6 +21,7 @@ describe('settings', () => {
     const settings = readSettings(withoutHost, '/srv/server/index.mjs')
     expect(settings.host).toBe('127.0.0.1')
     expect(settings.filmReaderPath).toBe('/srv/server/workers/film-reader.mjs')
+    expect(settings.ffmpegPath).toBeUndefined()
     expect(settings.limitsDatabasePath).not.toBe(settings.databasePath)
   })
 

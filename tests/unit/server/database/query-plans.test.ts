@@ -6,12 +6,18 @@ import type { Database } from '#server/database/client'
 import { openDatabase } from '#server/database/client'
 import { migrate } from '#server/database/migrate'
 import type { Tables } from '#server/database/schema'
+import {
+  findClipsNaming, findPhotosNaming, listAbandonedClips, listClipsNeeding, listKnownUploadIds, listPhotosNeeding,
+} from '#server/features/film/sweep/sweep.repository'
+import { listSwings, listSwingsOfReview } from '#server/features/film/swing.repository'
 import { claimDueLetters } from '#server/features/mail/outbox.repository'
 import { findOpenOrder, listOrdersToLookAt } from '#server/features/money/order.repository'
 import { listRefundsDue } from '#server/features/money/refund.repository'
 import { findOldestCredit } from '#server/features/offers/credit.repository'
 import { listUsers } from '#server/features/people/user.repository'
-import { listClips, listUnreadClips } from '#server/features/reviews/clip.repository'
+import { listPhotos } from '#server/features/photos/photo.repository'
+import { listClubs } from '#server/features/profile/profile.repository'
+import { listClips, listUnjoinedClips, listUnreadClips } from '#server/features/reviews/clip.repository'
 import { findDraft, findLetter } from '#server/features/reviews/letter.repository'
 import { countOpenTurnarounds, listOpenTurnarounds } from '#server/features/reviews/queue.repository'
 import { findVisibleReview, listReviewTimesMs, listVisibleReviews, nextReviewNumber } from '#server/features/reviews/review.repository'
@@ -63,8 +69,8 @@ async function plansOf(run: () => Promise<unknown>): Promise<string[]> {
 
 const viewer = (role: ViewerFacts['role'], isCoach = false): ViewerFacts => ({ id: 'v', role, isCoach, sessionId: 's' })
 const PAGE = { after: { atMs: 1, id: 'x' }, limit: 25 }
-/** One row by its nature, or small lists that a studio can count on its fingers. */
-const SMALL = /SCAN (coaches|studio|offers|invites)\b/
+/** One row by its nature, small lists that a studio can count on its fingers, or a list that comes with the query. */
+const SMALL = /SCAN (coaches|studio|offers|invites|json_each)\b/
 
 const HOT: [string, () => Promise<unknown>][] = [
   ['reviews of a student', () => listVisibleReviews(db, viewer('student'), { states: undefined, ...PAGE })],
@@ -80,6 +86,17 @@ const HOT: [string, () => Promise<unknown>][] = [
   ['session', () => findSessionViewer(db, 's', 1)],
   ['clips of a review', () => listClips(db, 'r')],
   ['unread clips', () => listUnreadClips(db, 1, 20)],
+  ['clips whose parts are not joined', () => listUnjoinedClips(db, 1, 20)],
+  ['swings of a clip', () => listSwings(db, 'c')],
+  ['swings of a review', () => listSwingsOfReview(db, 'r')],
+  ['photographs of a review', () => listPhotos(db, 'r')],
+  ['clubs of a student', () => listClubs(db, 's')],
+  ['abandoned uploads', () => listAbandonedClips(db, 1, 100)],
+  ['uploads that the store has', () => listKnownUploadIds(db, ['a', 'b'])],
+  ['clips whose film the store has', () => findClipsNaming(db, ['a', 'b'])],
+  ['clips that need film', () => listClipsNeeding(db, { afterKey: 'film/', toKey: 'film0', beforeMs: 1 })],
+  ['photographs that the store has', () => findPhotosNaming(db, ['a', 'b'])],
+  ['photographs that need a picture', () => listPhotosNeeding(db, { afterKey: 'photos/', toKey: 'photos0', beforeMs: 1 })],
   ['draft', () => findDraft(db, 'r', 'c')],
   ['letter', () => findLetter(db, 'r')],
   ['turnaround', () => findTurnaround(db, 'r', 'answer')],
