@@ -55,14 +55,14 @@ export async function openHouse({ storageUrl = 'http://127.0.0.1:9', limitsFacto
     SMTP_URL: 'smtp://127.0.0.1:9',
     MAIL_FROM: 'Northfield Studio <post@northfield.test>',
   }, 'main.mjs')
-  const { db, close } = openDatabase(':memory:')
+  const { db, writeCount, close } = openDatabase(':memory:')
   await migrate(db)
   await db.insertInto('studio')
     .values({ id: 1, name: 'Northfield Studio', time_zone: 'Europe/Lisbon', currency: 'EUR', contact_email: 'post@northfield.test' })
     .execute()
   const limits = openLimits(':memory:', limitsFactor)
   const mail = createMailer({ smtpUrl: settings.mail.smtpUrl, from: settings.mail.from })
-  const shared = { db, settings, limits, mail, storage: createStorage(settings.storage), payments: createPayments(settings.payments), log: createLog('silent') }
+  const shared = { db, writeCount, settings, limits, mail, storage: createStorage(settings.storage), payments: createPayments(settings.payments), log: createLog('silent') }
   let requests = 0
 
   async function ctx({ atMs = NOW_MS, sessionId }: { atMs?: number, sessionId?: string } = {}): Promise<Ctx> {

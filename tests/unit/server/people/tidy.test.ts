@@ -24,7 +24,7 @@ describe('tidying', () => {
     await insertSession(house.db, { id: sessions[1] ?? '', userId: joelId, nowMs: NOW_MS - DAY_MS, expiresAtMs: NOW_MS + 1 })
     await issueToken(house.db, NOW_MS - DAY_MS, { userId: joelId, purpose: 'confirm', lastsMs: DAY_MS })
     const token = await issueToken(house.db, NOW_MS - DAY_MS, { userId: joelId, purpose: 'confirm', lastsMs: DAY_MS + 1 })
-    const key = (name: string, createdAtMs: number) => ({ scope: 'visitor', key: name, request_hash: 'x', created_at_ms: createdAtMs })
+    const key = (name: string, createdAtMs: number) => ({ scope: 'visitor', key: name, request_hash: 'x', answer: 'null', created_at_ms: createdAtMs })
     await house.db.insertInto('idempotency_keys').values([key('old', NOW_MS - 30 * DAY_MS - 1), key('kept', NOW_MS - 30 * DAY_MS)]).execute()
 
     await tidyPeople(await house.ctx())
@@ -34,7 +34,7 @@ describe('tidying', () => {
   })
 
   it('clears more than one batch in a run', async () => {
-    const rows = Array.from({ length: 1201 }, (_, index) => ({ scope: 'visitor', key: `key-${index}`, request_hash: 'x', created_at_ms: 0 }))
+    const rows = Array.from({ length: 1201 }, (_, index) => ({ scope: 'visitor', key: `key-${index}`, request_hash: 'x', answer: 'null', created_at_ms: 0 }))
     for (let from = 0; from < rows.length; from += 400) await house.db.insertInto('idempotency_keys').values(rows.slice(from, from + 400)).execute()
     await tidyPeople(await house.ctx())
     expect(await house.db.selectFrom('idempotency_keys').select('key').execute()).toEqual([])
