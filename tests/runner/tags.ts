@@ -19,6 +19,13 @@ export const TAGS: Record<string, readonly TagLine[]> = {
     { number: '7', about: 'the screens', shownByHand: 'looked at by a person, on a phone\'s width and a desk\'s' },
     { number: 'fakes', about: 'the stand-ins refuse what the real services refuse' },
   ],
+  film: [
+    { number: '1', about: 'a large film arrives byte for byte over a line that breaks; npm run bench upload and prepare' },
+    { number: '2', about: 'film as phones make it is served right or explained, and nothing cut away remains' },
+    { number: '3', about: 'hostile and broken files are refused and leave nothing' },
+    { number: '4', about: 'the whole ask on a phone: a coach\'s link, a lost line, a closed page, a declined file' },
+    { number: '5', about: 'abandoned uploads are gone, a crash heals, store and rows agree' },
+  ],
 }
 
 export interface TagReport {
