@@ -6,7 +6,7 @@ import { readStore } from '#tests/support/store'
 import type { World } from '#tests/support/world'
 import { startWorld } from '#tests/support/world'
 
-/** What the issue asks for the file that claims 2^31 samples; every other one has the reader's own limit. */
+/** The bar for the files that claim 2^31 samples; every other one has the reader's own limit. */
 const SAMPLES_REFUSED_WITHIN_MS = 2000
 const READER_LIMIT_MS = 20_000
 
