@@ -65,8 +65,22 @@ export function useClips(reviewId: MaybeRefOrGetter<string | undefined>, known: 
     }
   }
 
+  function pause(view: ClipView) {
+    const id = toValue(reviewId)
+    if (id !== undefined) store.pause(id, view)
+  }
+
+  async function resume(view: ClipView) {
+    const id = toValue(reviewId)
+    if (id !== undefined) await store.resume(id, view)
+  }
+
+  // Another window has sent or given up what this one was waiting to send.
+  watch(() => store.endedElsewhereCount, () => void refresh().catch(() => undefined))
+
   let timer: number | undefined
   onMounted(() => {
+    void store.goOnWithKept()
     timer = window.setInterval(() => {
       if (isReading.value) void refresh().catch(() => undefined)
     }, READING_POLL_MS)
@@ -75,5 +89,5 @@ export function useClips(reviewId: MaybeRefOrGetter<string | undefined>, known: 
     if (import.meta.client) window.clearInterval(timer)
   })
 
-  return { uploadOf, clipOf, acceptedCount, isUnfinished, remove, problem, store }
+  return { uploadOf, clipOf, acceptedCount, isUnfinished, pause, resume, remove, problem, store }
 }

@@ -1,47 +1,30 @@
-import { computed, ref, watch } from 'vue'
+import { ref, watch } from 'vue'
 import { defineStore } from 'pinia'
-import type { ClipBrief, ClipUpload, ClipView, PartsAnswer, PreparedAs } from '#shared/types/reviews'
+import type { ClipBrief, ClipView, UploadPart } from '#shared/types/reviews'
 import { findFilmContentType } from '~/film/upload/content-type'
-import { putPart } from '~/film/upload/put-part'
-import { explainFailure, NotFilm, readFailure, type FailureWords } from '~/film/upload/explain'
+import { explainFailure, NotFilm } from '~/film/upload/explain'
 import { holdPage } from '~/film/upload/hold-page'
-import { keepTrying } from '~/film/upload/keep-trying'
-import { sendParts, type SendPlan } from '~/film/upload/send-parts'
+import { openKeeper } from '~/film/upload/keep/film-keeper'
+import { listWaitingFilms, noteClip } from '~/film/upload/keep/keep-clip'
+import { updateKept } from '~/film/upload/keep/ledger'
+import { isLostWithPage, newOnItsWay, type ClipOnItsWay } from '~/film/upload/on-its-way'
+import { EndedElsewhere, sendFilm, type FilmPorts } from '~/film/upload/send-film'
 import { waitForNextTry } from '~/film/upload/wait'
+import { Works, type ToldOfClip, type Work } from '~/film/upload/works'
 
-/** `starting`: asking for addresses; `reading`: all bytes are there and the server reads them; the last two are ends. */
-export type UploadPhase = 'starting' | 'sending' | 'reading' | 'done' | 'failed'
-
-/** One file on its way to the store. */
-export interface ClipOnItsWay {
-  reviewId: string
-  view: ClipView
-  fileName: string
-  bytes: number
-  sentBytes: number
-  phase: UploadPhase
-  /** Undefined until the server knows the clip. */
-  clip: ClipBrief | undefined
-  /** When failed. */
-  problem: FailureWords | undefined
-}
-
-/** What preparing a file took out of it, told beside it. */
-export type ToldOfClip = Partial<Record<'captureFramesPerSecond', number> & Record<'preparedAs', PreparedAs>>
-
-/** Films being sent. They outlive the page they were chosen on: the person may read on elsewhere meanwhile. */
+/** Films being sent. They outlive the page they were chosen on and, with a copy on the device, the visit too. */
 export const useUploadsStore = defineStore('uploads', () => {
+  const { viewer } = useViewer()
+  const api = useUploadApi()
   const bySlot = ref<Record<string, ClipOnItsWay>>({})
-  // Files and controllers are no state that could be drawn or carried from the server, so they stay outside it.
-  const files = new Map<string, File>()
-  const told = new Map<string, ToldOfClip>()
-  const controllers = new Map<string, AbortController>()
+  /** Grows when another tab has ended a clip that this one was waiting to send: what is known of it is old then. */
+  const endedElsewhereCount = ref(0)
+  // Files, workers and controllers are no state that could be drawn or carried from the server, so they stay outside it.
+  const works = new Works()
 
-  const isSending = computed(() => Object.values(bySlot.value).some(isUnderWay))
-  watch(isSending, holdPage)
+  watch(() => Object.values(bySlot.value).some(isLostWithPage), holdPage)
 
   const slotOf = (reviewId: string, view: ClipView) => `${reviewId}:${view}`
-  const find = (reviewId: string, view: ClipView) => bySlot.value[slotOf(reviewId, view)]
 
   function put(slot: string, change: Partial<ClipOnItsWay>) {
     const before = bySlot.value[slot]
@@ -49,102 +32,119 @@ export const useUploadsStore = defineStore('uploads', () => {
   }
 
   /** Sends a newly chosen file as the clip of this view. */
-  async function send(reviewId: string, view: ClipView, file: File, about: ToldOfClip = {}): Promise<void> {
-    told.set(slotOf(reviewId, view), about)
-    await run(reviewId, view, file, undefined, async (slot, signal) => {
-      const contentType = findFilmContentType(file.name, file.type)
-      if (contentType === undefined) throw new NotFilm()
-      const body = { view, fileName: file.name, bytes: file.size, contentType, ...about }
-      const answer = await patiently(headers => $fetch<ClipUpload>(`/api/reviews/${reviewId}/clips`, { method: 'POST', headers, body }), signal)
-      put(slot, { clip: answer.clip })
-      return { clipId: answer.clip.id, plan: { fileBytes: file.size, partBytes: answer.partBytes, parts: answer.parts, doneNumbers: [] } }
-    })
+  async function send(reviewId: string, view: ClipView, file: File, told: ToldOfClip = {}): Promise<void> {
+    await run(start(newOnItsWay(reviewId, view, { fileName: file.name, bytes: file.size }), { file, told }))
   }
 
-  /** Goes on with a clip that was begun before, from what the store has; `file` must be the same one. */
+  /** Goes on with a clip that was begun before and does not lie on this device whole; `file` must be the same one. */
   async function goOn(reviewId: string, clip: ClipBrief, file: File): Promise<void> {
-    await run(reviewId, clip.view, file, clip, async (_slot, signal) => {
-      // Asked for only here: the schemas weigh more than the rest of the page.
-      const { PART_BYTES } = await import('#shared/schemas/clips')
-      const answer = await patiently(headers => askParts(clip.id, [], headers), signal)
-      return { clipId: clip.id, plan: { fileBytes: file.size, partBytes: PART_BYTES, parts: answer.parts, doneNumbers: answer.done } }
-    })
+    await run(start({ ...newOnItsWay(reviewId, clip.view, clip), clip }, { file }))
   }
 
-  /** Takes up again what failed on the way, without choosing the file anew. */
-  async function tryAgain(reviewId: string, view: ClipView): Promise<void> {
-    const file = files.get(slotOf(reviewId, view))
-    const clip = find(reviewId, view)?.clip
-    if (file === undefined) return
-    if (clip === undefined) await send(reviewId, view, file, told.get(slotOf(reviewId, view)))
-    else await goOn(reviewId, clip, file)
-  }
-
-  async function run(
-    reviewId: string,
-    view: ClipView,
-    file: File,
-    clip: ClipBrief | undefined,
-    begin: (slot: string, signal: AbortSignal) => Promise<{ clipId: string, plan: SendPlan }>,
-  ): Promise<void> {
-    const slot = slotOf(reviewId, view)
-    controllers.get(slot)?.abort()
-    const controller = new AbortController()
-    controllers.set(slot, controller)
-    files.set(slot, file)
-    bySlot.value[slot] = { reviewId, view, fileName: file.name, bytes: file.size, sentBytes: 0, phase: 'starting', clip, problem: undefined }
-    try {
-      const { clipId, plan } = await begin(slot, controller.signal)
-      controller.signal.throwIfAborted()
-      put(slot, { phase: 'sending' })
-      await sendParts(plan, {
-        putPart: (url, range, onSentBytes, signal) => putPart(file, url, range, onSentBytes, signal),
-        askParts: numbers => patiently(headers => askParts(clipId, numbers, headers), controller.signal),
-        ...patience,
-      }, sentBytes => put(slot, { sentBytes }), controller.signal)
-      put(slot, { phase: 'reading', sentBytes: file.size })
-      const read = await patiently(headers => completeClip(clipId, headers), controller.signal)
-      controller.signal.throwIfAborted()
-      files.delete(slot)
-      put(slot, { phase: 'done', clip: read })
-    }
-    catch (error) {
-      if (!controller.signal.aborted) put(slot, { phase: 'failed', problem: explainFailure(error) })
+  /** Goes on by itself with what was on its way when a page was closed or loaded anew. Harmless when called again. */
+  async function goOnWithKept(): Promise<void> {
+    if (viewer.value === null) return
+    for (const film of await listWaitingFilms(viewer.value.id, Date.now())) {
+      const { reviewId, clip } = film
+      if ((bySlot.value[slotOf(reviewId, clip.view)]?.phase ?? 'failed') !== 'failed') continue
+      const sentBytes = Math.min(film.doneNumbers.length * film.partBytes, clip.bytes)
+      const slot = start({ ...newOnItsWay(reviewId, clip.view, clip), clip, sentBytes, isKept: true }, { film })
+      if (film.isPaused) put(slot, { phase: 'paused' })
+      else void run(slot)
     }
   }
 
-  /** Stops sending and forgets the file; what the server has is for `removeClip`. */
-  function stop(reviewId: string, view: ClipView) {
+  /** Takes up again what failed on the way or was told to wait, without choosing the file anew. */
+  async function resume(reviewId: string, view: ClipView): Promise<void> {
     const slot = slotOf(reviewId, view)
-    controllers.get(slot)?.abort()
-    controllers.delete(slot)
-    files.delete(slot)
+    noteIsPaused(slot, false)
+    await run(slot)
+  }
+
+  /** Lets a clip wait until the person says go on, over reloads too. Parts on their way are cut off and sent again then. */
+  function pause(reviewId: string, view: ClipView) {
+    const slot = slotOf(reviewId, view)
+    works.halt(slot)
+    noteIsPaused(slot, true)
+    put(slot, { phase: 'paused', isWaiting: false })
+  }
+
+  /** Stops sending and forgets the file and its copy; what the server has is for whoever gives the clip up. */
+  const stop = (reviewId: string, view: ClipView) => drop(slotOf(reviewId, view))
+  function drop(slot: string) {
+    works.end(slot)
     bySlot.value = Object.fromEntries(Object.entries(bySlot.value).filter(([key]) => key !== slot))
   }
 
-  return { bySlot, isSending, find, send, goOn, tryAgain, stop }
+  function start(clip: ClipOnItsWay, what: Partial<Pick<Work, 'file' | 'film' | 'told'>>): string {
+    const slot = slotOf(clip.reviewId, clip.view)
+    works.open(slot, what)
+    bySlot.value[slot] = clip
+    return slot
+  }
+
+  async function run(slot: string): Promise<void> {
+    put(slot, { phase: 'starting', problem: undefined, isWaiting: false })
+    await works.restart(slot, async (work, signal) => {
+      try {
+        const parts = work.film === undefined ? await begin(slot, work, signal) : undefined
+        if (work.film === undefined) return
+        work.keeper ??= openKeeper({ ...work.film, file: work.file, onWhole: () => put(slot, { isKept: true }) })
+        const clip = await sendFilm({ film: work.film, keeper: work.keeper, parts }, portsOf(slot), signal)
+        if (signal.aborted) return
+        works.end(slot)
+        put(slot, { phase: 'done', clip, isWaiting: false })
+      }
+      catch (error) {
+        if (!signal.aborted) fail(slot, error)
+      }
+    })
+  }
+
+  /** Has the server open the clip: the same one once more when it was asked before and its answer got lost. */
+  async function begin(slot: string, work: Work, signal: AbortSignal): Promise<UploadPart[] | undefined> {
+    const there = bySlot.value[slot]
+    const contentType = findFilmContentType(work.file?.name ?? '', work.file?.type ?? '')
+    if (there === undefined || contentType === undefined) throw new NotFilm()
+    const { reviewId, view, fileName, bytes } = there
+    const about = { reviewId, viewerId: viewer.value?.id ?? '' }
+    if (there.clip !== undefined) {
+      // Asked for only here: the schemas weigh more than the rest of the page.
+      const { PART_BYTES } = await import('#shared/schemas/clips')
+      work.film = await noteClip({ ...about, clip: there.clip, partBytes: PART_BYTES }, Date.now())
+      return undefined
+    }
+    const { clip, partBytes, parts } = await api.begin(reviewId, { view, fileName, bytes, contentType, ...work.told }, work.key, askingOf(slot, signal))
+    work.film = await noteClip({ ...about, clip, partBytes }, Date.now())
+    put(slot, { clip })
+    return parts
+  }
+
+  function noteIsPaused(slot: string, isPaused: boolean) {
+    const film = works.find(slot)?.film
+    if (film !== undefined) void updateKept(film.clipId, { isPaused }).catch(() => undefined)
+  }
+
+  function fail(slot: string, error: unknown) {
+    if (error instanceof EndedElsewhere) {
+      endedElsewhereCount.value += 1
+      return drop(slot)
+    }
+    const problem = explainFailure(error)
+    put(slot, { phase: 'failed', problem, isWaiting: false })
+    if (!problem.canGoOn) works.end(slot)
+  }
+
+  const askingOf = (slot: string, signal: AbortSignal) => ({ signal, onWait: (isWaiting: boolean) => put(slot, { isWaiting }) })
+  const portsOf = (slot: string): FilmPorts => ({
+    askParts: (clipId, numbers, signal) => api.askParts(clipId, numbers, askingOf(slot, signal)),
+    complete: (clipId, signal) => api.complete(clipId, askingOf(slot, signal)),
+    wait: waitForNextTry,
+    random: () => Math.random(),
+    onElsewhere: () => put(slot, { phase: 'elsewhere' }),
+    onProgress: ({ sentBytes, isWaiting }) => put(slot, { phase: 'sending', sentBytes, isWaiting }),
+    onArrived: () => put(slot, { phase: 'reading', isWaiting: false }),
+  })
+
+  return { bySlot, endedElsewhereCount, send, goOn, goOnWithKept, resume, pause, stop }
 })
-
-/** True while bytes still have to leave this device or be read. */
-export function isUnderWay(clip: ClipOnItsWay): boolean {
-  return clip.phase !== 'done' && clip.phase !== 'failed'
-}
-
-/** A type, not an interface: only types count as the plain records that headers are. */
-type KeyHeader = { 'Idempotency-Key': string }
-
-const patience = { wait: waitForNextTry, random: () => Math.random() }
-
-/** Repeats under one key while no definite answer comes, so that a tunnel does not end an upload. */
-async function patiently<T>(act: (headers: KeyHeader) => Promise<T>, signal: AbortSignal): Promise<T> {
-  const headers = { 'Idempotency-Key': crypto.randomUUID() }
-  return await keepTrying(() => act(headers), readFailure, patience, signal)
-}
-
-async function askParts(clipId: string, numbers: number[], headers: KeyHeader): Promise<PartsAnswer> {
-  return await $fetch<PartsAnswer>(`/api/clips/${clipId}/parts`, { method: 'POST', headers, body: { numbers } })
-}
-
-async function completeClip(clipId: string, headers: KeyHeader): Promise<ClipBrief> {
-  return await $fetch<ClipBrief>(`/api/clips/${clipId}/complete`, { method: 'POST', headers, body: {} })
-}

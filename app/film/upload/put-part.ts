@@ -1,4 +1,3 @@
-import type { PartRange } from './plan'
 import { PartError } from './send-parts'
 
 /** A line can die without a word; after this long without a byte moving the part counts as lost. */
@@ -9,13 +8,7 @@ const SILENCE_MAX_MS = 45_000
  * @param onSentBytes bytes of this part so far
  * @throws PartError; the signal's reason when it is aborted
  */
-export function putPart(
-  file: Blob,
-  url: string,
-  range: PartRange,
-  onSentBytes: (bytes: number) => void,
-  signal: AbortSignal,
-): Promise<void> {
+export function putPart(bytes: Blob, url: string, onSentBytes: (bytes: number) => void, signal: AbortSignal): Promise<void> {
   return new Promise((resolve, reject) => {
     signal.throwIfAborted()
     const request = new XMLHttpRequest()
@@ -43,7 +36,7 @@ export function putPart(
     signal.addEventListener('abort', cancel)
     request.open('PUT', url)
     listen()
-    // A slice without a type sends no Content-Type: the address is signed for the bytes alone.
-    request.send(file.slice(range.fromByte, range.toByte))
+    // A slice has no type and so sends no Content-Type: the address is signed for the bytes alone.
+    request.send(bytes.slice())
   })
 }

@@ -1,25 +1,30 @@
-/** Waits, or throws the signal's reason at once. While the device is off line the wait lasts until it is back. */
-export async function waitForNextTry(waitMs: number, signal: AbortSignal): Promise<void> {
-  await until(signal, done => window.setTimeout(done, waitMs), id => window.clearTimeout(id))
-  if (navigator.onLine) return
-  let isBack = () => {}
-  await until(signal, (done) => {
-    isBack = done
-    window.addEventListener('online', done, { once: true })
-  }, () => window.removeEventListener('online', isBack))
-}
+import { LONGEST_WAIT_MS } from './retry'
 
-function until<T>(signal: AbortSignal, start: (done: () => void) => T, stop: (started: T) => void): Promise<void> {
-  return new Promise((resolve, reject) => {
+/**
+ * Waits before the next try, or throws the signal's reason at once. Off line it waits until the line is back, and the moment it is
+ * back there is nothing more to wait for. Devices are wrong about their line at times, so half a minute is the most either way.
+ */
+export async function waitForNextTry(waitMs: number, signal: AbortSignal): Promise<void> {
+  await new Promise<void>((resolve, reject) => {
     signal.throwIfAborted()
-    const onAbort = () => {
-      stop(started)
+    const end = () => {
+      window.clearTimeout(timer)
+      window.removeEventListener('online', goOn)
+      signal.removeEventListener('abort', stop)
+    }
+    const goOn = () => {
+      end()
+      resolve()
+    }
+    const stop = () => {
+      end()
       reject(signal.reason)
     }
-    const started = start(() => {
-      signal.removeEventListener('abort', onAbort)
-      resolve()
-    })
-    signal.addEventListener('abort', onAbort, { once: true })
+    let timer = window.setTimeout(() => {
+      if (navigator.onLine) goOn()
+      else timer = window.setTimeout(goOn, LONGEST_WAIT_MS)
+    }, waitMs)
+    window.addEventListener('online', goOn)
+    signal.addEventListener('abort', stop)
   })
 }

@@ -3,6 +3,7 @@ import { describe, expect, it } from 'vitest'
 import type { ClipBrief } from '#shared/types/reviews'
 import FilmClip from '~/components/film/Clip.vue'
 import SubmitClip from '~/components/submit/Clip.vue'
+import SubmitClipSending from '~/components/submit/ClipSending.vue'
 import SubmitFilePicker from '~/components/submit/FilePicker.vue'
 import SubmitStandDrawing from '~/components/submit/StandDrawing.vue'
 import UiProgress from '~/components/ui/Progress.vue'
@@ -17,7 +18,7 @@ function show(props: Partial<InstanceType<typeof SubmitClip>['$props']>) {
   return mount(SubmitClip, {
     props: { view: 'face_on', clip: undefined, upload: undefined, problem: undefined, ...props },
     global: {
-      components: { FilmClip, SubmitFilePicker, SubmitStandDrawing, UiProgress },
+      components: { FilmClip, SubmitClipSending, SubmitFilePicker, SubmitStandDrawing, UiProgress },
       stubs: { UiButton: { template: '<button type="button"><slot /></button>' } },
     },
   })
@@ -33,7 +34,7 @@ describe('one clip of a review', () => {
 
   it('shows how much has gone', () => {
     const wrapper = show({ upload })
-    expect(wrapper.text()).toContain('Sending 5.2 MB of 8.1 MB. You can go to another page here; it carries on.')
+    expect(wrapper.text()).toContain('Sending 5.2 MB of 8.1 MB.')
     expect(wrapper.find('[role="progressbar"]').attributes('aria-valuenow')).toBe('64')
     expect(wrapper.text()).toContain('Stop sending')
   })

@@ -28,10 +28,19 @@ describe('keepTrying', () => {
     expect(act).toHaveBeenCalledTimes(1)
   })
 
-  it('does not go on for ever', async () => {
-    const act = vi.fn().mockRejectedValue(lost)
-    await expect(keepTrying(act, readFailure, ports, never)).rejects.toBe(lost)
-    expect(act).toHaveBeenCalledTimes(14)
+  it('waits for a line for as long as it takes', async () => {
+    const act = vi.fn()
+    for (let count = 0; count < 200; count += 1) act.mockRejectedValueOnce(lost)
+    act.mockResolvedValue('read')
+    expect(await keepTrying(act, readFailure, ports, never)).toBe('read')
+    expect(act).toHaveBeenCalledTimes(201)
+  })
+
+  it('tells a fault of the server that stays', async () => {
+    const fault = new Failed({ kind: 'status', status: 500 })
+    const act = vi.fn().mockRejectedValue(fault)
+    await expect(keepTrying(act, readFailure, ports, never)).rejects.toBe(fault)
+    expect(act).toHaveBeenCalledTimes(8)
   })
 
   it('ends when it is called off', async () => {

@@ -58,18 +58,39 @@ describe('sendParts', () => {
   it('sends only what the store lacks and reports the whole', async () => {
     const store = fakeStore()
     const sent: number[] = []
-    await sendParts(planOf(4, [1, 3]), store.ports, bytes => sent.push(bytes), never)
+    await sendParts(planOf(4, [1, 3]), store.ports, ({ sentBytes }) => sent.push(sentBytes), never)
     expect([...store.arrived].sort((a, b) => a - b)).toEqual([2, 4])
     expect(sent[0]).toBe(20)
     expect(sent.at(-1)).toBe(37)
   })
 
-  it('tries a part again after a fault of the line, with growing waits', async () => {
-    const store = fakeStore({ 2: [new PartError({ kind: 'network' }), new PartError({ kind: 'status', status: 503 })] })
+  it('tries a part again after a fault, with growing waits, and asks the store first when the line broke', async () => {
+    const store = fakeStore({ 2: [new PartError({ kind: 'status', status: 503 }), new PartError({ kind: 'network' })] })
     await sendParts(planOf(3), store.ports, () => {}, never)
     expect(store.arrived).toContain(2)
     expect(store.waits).toEqual([1000, 2000])
-    expect(store.asked).toEqual([])
+    expect(store.asked).toEqual([[2]])
+  })
+
+  it('throws all addresses away when one has run out', async () => {
+    const store = fakeStore({ 1: [new PartError({ kind: 'status', status: 403 })] })
+    const urls: string[] = []
+    const putPart: SendPorts['putPart'] = (url, ...rest) => {
+      urls.push(url)
+      return store.ports.putPart(url, ...rest)
+    }
+    await sendParts(planOf(6), { ...store.ports, putPart }, () => {}, never)
+    expect(urls.slice(0, 3)).toEqual(['first-1', 'first-2', 'first-3'])
+    expect(urls.slice(3).sort()).toEqual(['fresh-1', 'fresh-4', 'fresh-5', 'fresh-6'])
+  })
+
+  it('says that it waits only while nothing moves', async () => {
+    const store = fakeStore({ 1: [new PartError({ kind: 'network' })], 2: [new PartError({ kind: 'network' })] })
+    const told: boolean[] = []
+    await sendParts(planOf(2), store.ports, ({ isWaiting }) => told.push(isWaiting), never)
+    expect(told).toContain(true)
+    expect(told.at(-1)).toBe(false)
+    expect(told.indexOf(true)).toBeGreaterThan(1)
   })
 
   it('asks for a fresh address when one has run out', async () => {
