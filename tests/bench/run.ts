@@ -4,9 +4,8 @@ import { api } from './api'
 import type { Bench } from './bench'
 import { tableOf } from './bench'
 import { prepare } from './prepare'
-import { upload } from './upload'
 
-const BENCHES: Record<string, Bench> = { api, prepare, upload }
+const BENCHES: Record<string, Bench> = { api, prepare }
 const RESULTS_DIR = '.bench'
 
 /** `npm run bench <name>`: a table, and the same as JSON; ends with 1 when an aim was missed. */
